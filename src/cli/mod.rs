@@ -1,0 +1,1 @@
+//! Arguments, exit codes, one file per command.

@@ -1,0 +1,4 @@
+//! IEC 60063 preferred values.
+/// Placeholder.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Series;

@@ -1,0 +1,1 @@
+//! Text, JSON and CSV from finished results; computes nothing.

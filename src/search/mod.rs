@@ -1,0 +1,1 @@
+//! Enumeration of designs, dominance, the pricing oracle.
