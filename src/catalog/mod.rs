@@ -2,6 +2,8 @@
 
 mod fault;
 mod model;
+mod places;
+pub mod stream;
 pub mod yaml;
 
 pub use fault::{Fault, Severity};
