@@ -24,6 +24,15 @@ impl Connection {
             Self::Parallel => "parallel",
         }
     }
+
+    /// The resistance of elements joined this way.
+    #[must_use]
+    pub fn join(self, elements: impl Iterator<Item = Ohms>) -> Ohms {
+        match self {
+            Self::Single | Self::Series => elements.sum(),
+            Self::Parallel => Ohms::new(1.0 / elements.map(|r| 1.0 / r.value()).sum::<f64>()),
+        }
+    }
 }
 
 /// One resistor of a network.
@@ -50,11 +59,7 @@ impl Network<'_> {
     /// Nominal resistance of the whole.
     #[must_use]
     pub fn ohms(&self) -> Ohms {
-        let each = self.elements.iter().map(|element| element.ohms.value());
-        match self.connection {
-            Connection::Single | Connection::Series => each.sum(),
-            Connection::Parallel => Ohms::new(1.0 / each.map(|r| 1.0 / r.value()).sum::<f64>()),
-        }
+        self.connection.join(self.elements.iter().map(|element| element.ohms.value()))
     }
 }
 

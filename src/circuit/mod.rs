@@ -1,15 +1,25 @@
 //! The floated-reference arrangement: operating window, error terms, budget methods, audit.
 
+mod amplifier_terms;
+mod board_terms;
+mod check;
 mod contribution;
 mod design;
 mod evaluation;
+mod failures;
+mod figure;
 mod frame;
 mod limits;
+mod network_terms;
+mod reference_terms;
 mod terms;
+mod window;
+mod wired;
 
 pub use contribution::{Contribution, total_of};
 pub use design::{Connection, Design, Element, LiftStack, Network};
 pub use evaluation::{Compliance, Evaluation, LimitLine, NotStated, TermLine};
 pub use frame::Frame;
-pub use limits::{LIMITS, LimitDef, LimitId};
-pub use terms::{TERMS, TermDef, TermId};
+pub use limits::{LIMITS, LimitDef, LimitId, LoadEnd};
+pub use terms::{Nature, Owner, TERMS, TermDef, TermId};
+pub use wired::ElementChoice;
