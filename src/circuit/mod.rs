@@ -2,9 +2,12 @@
 
 mod amplifier_terms;
 mod board_terms;
+mod cautions;
 mod check;
+mod compliance;
 mod contribution;
 mod design;
+mod evaluate;
 mod evaluation;
 mod failures;
 mod figure;
@@ -16,8 +19,10 @@ mod terms;
 mod window;
 mod wired;
 
+pub use cautions::cautions;
 pub use contribution::{Contribution, total_of};
 pub use design::{Connection, Design, Element, LiftStack, Network};
+pub use evaluate::evaluate;
 pub use evaluation::{Compliance, Evaluation, LimitLine, NotStated, TermLine};
 pub use frame::Frame;
 pub use limits::{LIMITS, LimitDef, LimitId, LoadEnd};
