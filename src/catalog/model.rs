@@ -159,6 +159,21 @@ pub enum TempcoMethod {
     Butterfly,
 }
 
+impl TempcoMethod {
+    /// All methods.
+    pub const ALL: [Self; 3] = [Self::Slope, Self::Box, Self::Butterfly];
+
+    /// The word in a file.
+    #[must_use]
+    pub const fn word(self) -> &'static str {
+        match self {
+            Self::Slope => "slope",
+            Self::Box => "box",
+            Self::Butterfly => "butterfly",
+        }
+    }
+}
+
 /// How an error grows with time.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum GrowthLaw {
@@ -166,6 +181,20 @@ pub enum GrowthLaw {
     Sqrt,
     /// In proportion to time.
     Linear,
+}
+
+impl GrowthLaw {
+    /// All laws.
+    pub const ALL: [Self; 2] = [Self::Sqrt, Self::Linear];
+
+    /// The word in a file.
+    #[must_use]
+    pub const fn word(self) -> &'static str {
+        match self {
+            Self::Sqrt => "sqrt",
+            Self::Linear => "linear",
+        }
+    }
 }
 
 /// An error stated for a time, and how it grows.
