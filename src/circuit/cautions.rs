@@ -1,6 +1,6 @@
 //! What to heed where the circuit could hurt someone. Plain remarks, no claim of conformity.
 
-use crate::quantity::Amperes;
+use crate::quantity::{Amperes, engineering};
 use crate::request::Request;
 
 /// Supplies up to this, in volts, need no protection against touch where it is dry and indoors:
@@ -21,15 +21,16 @@ pub fn cautions(request: &Request) -> Vec<String> {
     if across <= TOUCHABLE {
         return Vec::new();
     }
+    let spanned = engineering(across, "V", 4);
     let mut remarks = Vec::new();
     remarks.push(if across > EXTRA_LOW {
         format!(
-            "Danger: the supply spans {across} V. That is above extra-low voltage (120 V \
+            "Danger: the supply spans {spanned}. That is above extra-low voltage (120 V \
              ripple-free DC, IEC 61140). Touching it can kill. It needs basic and fault protection."
         )
     } else {
         format!(
-            "Caution: the supply spans {across} V. Above 60 V ripple-free DC (dry, indoors; EN \
+            "Caution: the supply spans {spanned}. Above 60 V ripple-free DC (dry, indoors; EN \
              60204-1, 6.4) live parts need protection against touch. Where it is wet or outdoors \
              the limit is lower."
         )

@@ -7,8 +7,6 @@ const RELATIVE: f64 = 1e-9;
 
 /// A quantity that limits are stated in.
 pub(super) trait Side: Copy {
-    /// The unit in the JSON.
-    const UNIT: &'static str;
     /// An inequality still holds when it fails by no more than this, in the unit.
     const ABSOLUTE: f64;
     /// The figure in the unit.
@@ -16,9 +14,8 @@ pub(super) trait Side: Copy {
 }
 
 macro_rules! sides {
-    ($($name:ident $unit:literal $absolute:literal;)+) => {$(
+    ($($name:ident $absolute:literal;)+) => {$(
         impl Side for $name {
-            const UNIT: &'static str = $unit;
             const ABSOLUTE: f64 = $absolute;
             fn figure(self) -> f64 {
                 self.value()
@@ -28,12 +25,12 @@ macro_rules! sides {
 }
 
 sides! {
-    Volts "V" 1e-9;
-    Amperes "A" 0.0;
-    Watts "W" 0.0;
-    Farads "F" 0.0;
-    Celsius "degC" 1e-9;
-    Ppm "ppm" 0.0;
+    Volts 1e-9;
+    Amperes 0.0;
+    Watts 0.0;
+    Farads 0.0;
+    Celsius 1e-9;
+    Ppm 0.0;
 }
 
 /// Both sides of an inequality, and whether it holds.
@@ -47,15 +44,13 @@ pub struct Check {
     pub margin: f64,
     /// Whether it holds, with the tolerance for rounding.
     pub holds: bool,
-    /// The unit of all three.
-    pub unit: &'static str,
 }
 
 impl Check {
     fn of<Q: Side>(value: Q, bound: Q, margin: f64) -> Self {
         let (value, bound) = (value.figure(), bound.figure());
         let allowed = (RELATIVE * value.abs().max(bound.abs())).max(Q::ABSOLUTE);
-        Self { value, bound, margin, holds: margin >= -allowed, unit: Q::UNIT }
+        Self { value, bound, margin, holds: margin >= -allowed }
     }
 
     /// `value <= bound`.

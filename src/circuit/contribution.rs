@@ -62,22 +62,20 @@ pub fn total_of(budget: Budget, random: f64, systematic: f64) -> Ppm {
 
 /// A term over several elements.
 #[derive(Clone, Copy, Debug, Default)]
-pub(super) struct OverElements {
+struct OverElements {
     /// The plain sum, in ppm.
-    pub sum: f64,
+    sum: f64,
     /// By the budget's method, in ppm.
-    pub combined: f64,
-    /// Whether any element states the figure.
-    pub known: bool,
-    /// Whether any element lacks it.
-    pub unstated: bool,
+    combined: f64,
+    /// Whether any element lacks the figure.
+    unstated: bool,
 }
 
 impl Frame<'_> {
     /// Combines a term over the elements of a network: worst-case their sum; rss and gum the
     /// elements of one type added (fully correlated, JCGM 100:2008, 5.2.2), different types
     /// root-sum-squared.
-    pub(super) fn over_elements(
+    fn over_elements(
         &self,
         wired: &Wired<'_>,
         mut figure: impl FnMut(&ElementChoice<'_>) -> Figure<Size>,
@@ -93,7 +91,6 @@ impl Frame<'_> {
                 }
                 Figure::Absent => continue,
             };
-            all.known = true;
             all.sum += size;
             // (a + b)² = a² + b·(b + 2a): an element brings the cross products with those of its
             // type before it. There are at most three, so asking again is cheaper than a list.

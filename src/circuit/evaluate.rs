@@ -5,7 +5,7 @@ use std::collections::BTreeSet;
 
 use crate::catalog::Supply;
 use crate::quantity::{Ppm, ppm_text};
-use crate::request::{Output, Request};
+use crate::request::{Budget, Output, Request};
 
 use super::check::Check;
 use super::compliance::compliance;
@@ -108,17 +108,35 @@ impl<'w> Work<'w> {
     }
 
     /// A term over the elements, by the budget's method and as the plain sum; what an element
-    /// does not state is noted.
+    /// does not state is noted. Elements of one type add, types are root-sum-squared in rss and
+    /// gum (JCGM 100:2008, 5.2.2). Written apart from the search's way, so that each checks the
+    /// other.
     fn over_elements(&mut self, term: &TermDef) -> Option<(Ppm, Ppm)> {
         let TermFn::Element(figure) = term.figure else { return None };
-        let (frame, wired) = (self.frame, self.wired);
-        for (element, choice) in self.design.network.elements.iter().zip(wired.elements()) {
-            if let Figure::NotStated(field) = figure(frame, &wired.element(choice)) {
-                self.missing(&element.order_code, field);
+        let mut of_types: Vec<(&ElementChoice<'_>, Ppm)> = Vec::new();
+        let (design, wired) = (self.design, self.wired);
+        for (element, choice) in design.network.elements.iter().zip(wired.elements()) {
+            match figure(self.frame, &wired.element(choice)) {
+                Figure::Known(Size { ppm, .. }) => {
+                    match of_types.iter_mut().find(|(first, _)| first.same_type(choice)) {
+                        Some((_, sum)) => *sum = *sum + ppm,
+                        None => of_types.push((choice, ppm)),
+                    }
+                }
+                Figure::NotStated(field) => self.missing(&element.order_code, field),
+                Figure::Absent => {}
             }
         }
-        let all = frame.over_elements(wired, |choice| figure(frame, &wired.element(choice)));
-        all.known.then_some((Ppm::new(all.combined), Ppm::new(all.sum)))
+        let sum: Ppm = of_types.iter().map(|(_, ppm)| *ppm).sum();
+        let combined = match (self.frame.request.budget, of_types.as_slice()) {
+            (_, []) => return None,
+            (Budget::WorstCase, _) | (_, [_]) => sum,
+            (Budget::Rss | Budget::Gum { .. }, types) => {
+                let squares: f64 = types.iter().map(|(_, ppm)| ppm.value() * ppm.value()).sum();
+                Ppm::new(squares.sqrt())
+            }
+        };
+        Some((combined, sum))
     }
 
     /// The budget line of a term; with an adjustment a static one is listed as removed.
