@@ -63,6 +63,15 @@ impl Check {
         Self::of(value, bound, value.figure() - bound.figure())
     }
 
+    /// The largest value that an `at_most` of this bound lets hold, tolerance included.
+    pub(super) fn most(&self) -> f64 {
+        let absolute = match self.unit {
+            Volts::UNIT => Volts::ABSOLUTE,
+            _ => 0.0,
+        };
+        (self.bound / (1.0 - RELATIVE)).max(self.bound + absolute)
+    }
+
     /// The one with the smaller margin.
     pub(super) fn tighter(self, other: Self) -> Self {
         if other.margin < self.margin { other } else { self }

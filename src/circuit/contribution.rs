@@ -115,7 +115,7 @@ impl Frame<'_> {
         all
     }
 
-    fn gather(&self, into: &mut Contribution, term: &TermDef, figure: Figure<Size>) {
+    pub(super) fn gather(&self, into: &mut Contribution, term: &TermDef, figure: Figure<Size>) {
         match figure {
             Figure::Known(size) => self.place(into, term, size.ppm.value(), size.ppm.value()),
             Figure::NotStated(_) => into.unstated = true,

@@ -9,6 +9,13 @@ use super::frame::Frame;
 /// A ratio this close to 1 is rounding of the division, not a mismatch.
 const ROUNDING: f64 = 8.0 * f64::EPSILON;
 
+/// abs(R*/R − 1), for the wanted and the nominal resistance.
+#[must_use]
+pub fn mismatch(ideal: Ohms, nominal: Ohms) -> Ppm {
+    let ratio = (ideal / nominal - 1.0).abs();
+    Ppm::from_ratio(if ratio <= ROUNDING { 0.0 } else { ratio })
+}
+
 /// One element of a network as the budget sees it.
 #[derive(Clone, Copy, Debug)]
 pub struct ElementChoice<'a> {
@@ -64,8 +71,7 @@ impl<'n> Wired<'n> {
 
     /// abs(R*/R − 1).
     pub fn mismatch(&self, ideal: Ohms) -> Ppm {
-        let ratio = (ideal / self.total - 1.0).abs();
-        Ppm::from_ratio(if ratio <= ROUNDING { 0.0 } else { ratio })
+        mismatch(ideal, self.total)
     }
 
     pub fn element(&self, choice: &ElementChoice<'n>) -> WiredElement<'n> {

@@ -1,6 +1,9 @@
 //! The purchase list in exact money.
 
 use crate::quantity::Money;
+use crate::search::Pick;
+
+use super::family::Family;
 
 /// One order line.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -38,4 +41,48 @@ impl Bill {
     pub fn total(&self) -> Money {
         self.parts_cost + self.lines_cost + self.placement_cost + self.adjustment_cost
     }
+}
+
+/// The purchase list of a set; `None` when a part cannot be had.
+#[must_use]
+pub fn bill(family: &Family<'_, '_>, picks: &[Pick]) -> Option<Bill> {
+    let market = family.market;
+    let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
+    let mut lines = Vec::new();
+    for (offer, needed) in family.demand(&some, None) {
+        let buy = family.buy(offer, needed)?;
+        lines.push((
+            market.kind(offer),
+            BillLine {
+                order_code: market.order_code(offer),
+                needed,
+                bought: buy.units,
+                each: Money::from_micros(i128::from(buy.each)),
+                cost: Money::from_micros(i128::from(buy.cost)),
+            },
+        ));
+    }
+    lines.sort_by(|a, b| a.0.cmp(&b.0).then_with(|| a.1.order_code.cmp(&b.1.order_code)));
+    let lines: Vec<BillLine> = lines.into_iter().map(|(_, line)| line).collect();
+    let purchase = &market.request.purchase;
+    let mut placement_cost = Money::ZERO;
+    let mut adjustment_cost = Money::ZERO;
+    for (output, pick) in picks.iter().enumerate() {
+        let (space, quantity) = (family.spaces[output], family.quantities[output]);
+        let frame = &space.frames[pick.frame as usize];
+        let diodes = frame.lift.map_or(0, |(_, count)| u64::from(count));
+        let components = 2 + space.elements(pick).len() as u64 + diodes;
+        placement_cost = placement_cost + purchase.placement_cost * (components * quantity);
+        if let Some(step) = frame.adjustment {
+            let each = Money::from_micros(i128::from(market.adjustments[step as usize].1));
+            adjustment_cost = adjustment_cost + each * quantity;
+        }
+    }
+    Some(Bill {
+        parts_cost: lines.iter().map(|line| line.cost).sum(),
+        lines_cost: purchase.line_cost * lines.len() as u64,
+        placement_cost,
+        adjustment_cost,
+        lines,
+    })
 }

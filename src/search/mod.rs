@@ -1,1 +1,23 @@
 //! Enumeration of designs, dominance, the pricing oracle.
+
+mod accurate;
+mod candidates;
+mod combos;
+mod costs;
+mod errors;
+mod glob;
+mod listing;
+mod market;
+mod networks;
+mod oracle;
+mod pairing;
+mod rules;
+mod space;
+mod ties;
+
+pub use combos::{Combo, Slot};
+pub use costs::{Amount, Costs};
+pub use listing::{ListedFrame, ListedNetwork, ListedPair, Listing, runs};
+pub use market::{Market, MarketError, OfferId, RuleRemovals, Stocked, SupplyName, Tariff};
+pub use oracle::Pick;
+pub use space::{Common, FrameSpace, NetSpace, OutputSpace, PartIn};

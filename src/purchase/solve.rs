@@ -1,0 +1,355 @@
+//! The cheapest set for a family, with its proof.
+
+use std::time::{Duration, Instant};
+
+use crate::search::{Amount, Listing, OfferId, Pick};
+
+use super::bound::{Bound, Bounder, Designs, Effort};
+use super::family::{Demand, Family, Terms};
+use super::local::{Incumbent, LocalSearch, Weighed};
+use super::model::{Aim, ChainModel};
+use super::solver::{Ending, solve as solve_program};
+
+/// What may end a search early.
+pub trait Watch: Sync {
+    /// Whether to stop now.
+    fn stop(&self) -> bool;
+    /// When to stop, where there is a time limit.
+    fn deadline(&self) -> Option<Instant>;
+    /// Told what the search is doing.
+    fn note(&self, phase: &str, best: Option<i64>, bound: Option<i64>);
+}
+
+/// How the search for a family ended.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Outcome {
+    /// A set, with a lower bound on every set's total; proved optimal when they meet.
+    Found {
+        /// The set.
+        best: Incumbent,
+        /// Lower bound in millionths.
+        bound: i64,
+    },
+    /// Proved: no set keeps `lines_max`; the fewest lines that any set has.
+    TooManyLines(u64),
+    /// Proved: no set can be bought from stock; what the least short set lacks.
+    OutOfStock(Vec<(OfferId, u64)>),
+    /// Stopped before any set was found.
+    Open,
+}
+
+/// Rows up to which an output's designs are listed one by one.
+const MOST_LISTED: usize = 400_000;
+/// Rows of all outputs up to which the integer program is put to the solver at once.
+const MOST_SOLVED: usize = 40_000;
+
+/// Finds the cheapest set.
+#[must_use]
+pub fn solve<'s, 'a>(family: &Family<'s, 'a>, watch: &dyn Watch) -> Outcome {
+    let designs: Vec<Designs<'s, 'a>> =
+        family.spaces.iter().map(|space| Designs::All(space)).collect();
+    let mut search = Search { family, watch, unit: granularity(family), extra_line: 0 };
+    let Some(first) = search.first_set(&designs) else {
+        return if watch.stop() { Outcome::Open } else { search.why_none(designs) };
+    };
+    if family.spaces.len() == 1 && search.extra_line == 0 {
+        // One output alone: the oracle has priced every design with its exact cost.
+        let bound = first.total;
+        return Outcome::Found { best: first, bound };
+    }
+    search.prove(first, designs)
+}
+
+struct Search<'f, 's, 'a> {
+    family: &'f Family<'s, 'a>,
+    watch: &'f dyn Watch,
+    /// Every total is a multiple of this.
+    unit: i64,
+    /// A price on lines beyond theirs, where `lines_max` binds.
+    extra_line: i64,
+}
+
+impl<'s, 'a> Search<'_, 's, 'a> {
+    /// Good sets from a few starts; where the lines are too many, with a rising price on lines.
+    fn first_set(&mut self, designs: &[Designs<'s, 'a>]) -> Option<Incumbent> {
+        self.watch.note("first set", None, None);
+        let mut extra = 0;
+        loop {
+            let best = self.local_sets(designs, extra, &[])?;
+            if let Some(total) = self.family.total(&best.picks) {
+                self.extra_line = extra;
+                return Some(Incumbent { total, picks: best.picks });
+            }
+            let least = self.weightiest_line(&best.picks);
+            if self.watch.stop() || extra > least.saturating_mul(64) {
+                return None;
+            }
+            extra = (extra * 2).max(self.family.terms.line).max(least / 64).max(self.unit);
+        }
+    }
+
+    /// The total of a set as a scale for a price on lines.
+    fn weightiest_line(&self, picks: &[Pick]) -> i64 {
+        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
+        let demand = self.family.demand(&some, None);
+        demand.iter().map(|(&offer, &n)| self.family.cost(offer, n)).sum::<i64>().max(1)
+    }
+
+    /// The best set that local search reaches from the usual starts and those given.
+    fn local_sets(
+        &self,
+        designs: &[Designs<'s, 'a>],
+        extra: i64,
+        starts: &[Vec<Pick>],
+    ) -> Option<Weighed> {
+        let stop = || self.watch.stop();
+        let mut local = LocalSearch::new(self.family, designs, extra);
+        let alone = local.each_alone();
+        let mut order: Vec<usize> = (0..designs.len()).collect();
+        order.sort_by_key(|&o| std::cmp::Reverse(alone[o].as_ref().map_or(0, |(cost, _)| *cost)));
+        let alone: Vec<Option<Pick>> = alone.into_iter().map(|p| p.map(|(_, p)| p)).collect();
+        let nothing = vec![None; designs.len()];
+        let reversed: Vec<usize> = order.iter().rev().copied().collect();
+        let mut best: Option<Weighed> = None;
+        let from = |start: &Vec<Pick>| start.iter().copied().map(Some).collect::<Vec<_>>();
+        for (start, order) in [(alone, &order), (nothing.clone(), &order), (nothing, &reversed)]
+            .into_iter()
+            .chain(starts.iter().map(|start| (from(start), &order)))
+        {
+            if let Some(found) = local.settled_from(start, order)
+                && best.as_ref().is_none_or(|b| found.weighed < b.weighed)
+            {
+                best = Some(found);
+            }
+        }
+        best.map(|best| local.improve(best, 3, &stop))
+    }
+
+    /// Raises the bound, lowers the best set and drops designs until they meet.
+    fn prove(&mut self, mut best: Incumbent, mut designs: Vec<Designs<'s, 'a>>) -> Outcome {
+        let family = self.family;
+        let mut proved = i64::MIN;
+        let mut multipliers: Option<Vec<Vec<f64>>> = None;
+        let mut rows_before = usize::MAX;
+        for round in 0..8 {
+            let mut bounder =
+                Bounder::new(family, &designs, self.extra_line, multipliers.as_deref());
+            let effort = Effort { steps: if round == 0 { 250 } else { 500 }, patience: 25 };
+            let stop = || self.watch.stop();
+            // The bound is on cost plus the price on lines; a set within `lines_max` pays no more
+            // than that price times the most.
+            let lines = self.extra_line * family.terms.lines_max.map_or(0, |m| m as i64);
+            let Some(bound) =
+                bounder.raise(&designs, best.total.saturating_add(lines), effort, &stop)
+            else {
+                // Nothing cheaper is left.
+                return Outcome::Found { bound: best.total, best };
+            };
+            proved = proved.max(bound.floor() - lines);
+            self.watch.note("bound", Some(best.total), Some(proved));
+            if proved > best.total - self.unit {
+                return Outcome::Found { bound: best.total, best };
+            }
+            if stop() {
+                return Outcome::Found { best, bound: proved };
+            }
+            self.improve(&mut best, &designs, &bound);
+            let Some(listings) = self.reduce(&designs, &bounder, &bound, best.total, lines) else {
+                return Outcome::Found { best, bound: proved };
+            };
+            if listings.iter().any(|l| l.frames.is_empty()) {
+                return Outcome::Found { bound: best.total, best };
+            }
+            let rows: usize = listings.iter().map(Listing::rows).sum();
+            designs = listings.into_iter().map(Designs::Listed).collect();
+            multipliers = Some(bound.multipliers);
+            if rows <= 400 || rows as f64 > 0.7 * rows_before as f64 {
+                break;
+            }
+            rows_before = rows;
+        }
+        self.finish(best, proved, designs)
+    }
+
+    /// Local search from the designs that the bound picked.
+    fn improve(&self, best: &mut Incumbent, designs: &[Designs<'s, 'a>], bound: &Bound) {
+        let picks: Vec<Pick> = bound.picks.iter().map(|(_, pick)| *pick).collect();
+        let starts = [best.picks.clone(), picks];
+        if let Some(found) = self.local_sets(designs, self.extra_line, &starts)
+            && let Some(total) = self.family.total(&found.picks)
+            && total < best.total
+        {
+            *best = Incumbent { total, picks: found.picks };
+        }
+    }
+
+    /// Lemma: a set costs at least the bound plus, for each output, what its design costs at the
+    /// multipliers beyond the cheapest one. So a design that is dearer than the cheapest by more
+    /// than best set less bound is in no better set.
+    fn reduce(
+        &self,
+        designs: &[Designs<'s, 'a>],
+        bounder: &Bounder<'_, 's, 'a>,
+        bound: &Bound,
+        best: i64,
+        lines: i64,
+    ) -> Option<Vec<Listing<'s, 'a>>> {
+        let slack = (best - self.unit) as f64 - (bound.value - lines as f64);
+        let slack = slack + bound.value.abs() * 1e-11 + 1.0;
+        designs
+            .iter()
+            .enumerate()
+            .map(|(output, of)| {
+                let ceiling = bound.picks[output].0 + slack;
+                let costs = bounder.costs(output);
+                match of {
+                    Designs::All(space) => space.listing(costs, ceiling, MOST_LISTED),
+                    Designs::Listed(listing) => Some(listing.reduced(costs, ceiling)),
+                }
+            })
+            .collect()
+    }
+
+    /// The integer program over what is left.
+    fn finish(&self, mut best: Incumbent, proved: i64, designs: Vec<Designs<'s, 'a>>) -> Outcome {
+        let listings: Vec<Listing<'s, 'a>> = designs
+            .into_iter()
+            .filter_map(|of| match of {
+                Designs::Listed(listing) => Some(listing),
+                Designs::All(_) => None,
+            })
+            .collect();
+        let rows: usize = listings.iter().map(Listing::rows).sum();
+        if listings.len() < self.family.spaces.len() || rows > MOST_SOLVED {
+            return Outcome::Found { best, bound: proved };
+        }
+        self.watch.note("integer program", Some(best.total), Some(proved));
+        let model = ChainModel::new(self.family, &listings, Aim::Cost);
+        match solve_program(&model.program(), self.time_left()) {
+            Ending::Optimal(values) => {
+                // The solver's own figures are not trusted: the set it names is counted exactly.
+                if let Some(picks) = model.picks(&values)
+                    && let Some(total) = self.family.total(&picks)
+                {
+                    if total < best.total {
+                        best = Incumbent { total, picks };
+                    }
+                    return Outcome::Found { bound: best.total, best };
+                }
+                Outcome::Found { best, bound: proved }
+            }
+            Ending::Infeasible => Outcome::Found { bound: best.total, best },
+            Ending::Stopped { values, bound } => {
+                if let Some(picks) = values.and_then(|values| model.picks(&values))
+                    && let Some(total) = self.family.total(&picks)
+                    && total < best.total
+                {
+                    best = Incumbent { total, picks };
+                }
+                let bound = bound.map_or(proved, |bound| {
+                    let micros = bound * 1e6;
+                    proved.max((micros - micros.abs() * 1e-7).floor() as i64)
+                });
+                Outcome::Found { bound: bound.min(best.total), best }
+            }
+            Ending::Trouble(why) => {
+                self.watch.note(&format!("solver: {why}"), Some(best.total), Some(proved));
+                Outcome::Found { best, bound: proved }
+            }
+        }
+    }
+
+    fn time_left(&self) -> Duration {
+        self.watch.deadline().map_or(Duration::from_secs(86_400), |deadline| {
+            deadline.saturating_duration_since(Instant::now())
+        })
+    }
+
+    /// No set was found: which rule on the whole purchase cannot be kept.
+    fn why_none(&self, designs: Vec<Designs<'s, 'a>>) -> Outcome {
+        let free = Family {
+            market: self.family.market,
+            spaces: self.family.spaces.clone(),
+            quantities: self.family.quantities.clone(),
+            terms: Terms { line: 1, placement: 0, lines_max: None, priced: false },
+        };
+        let mut search = Search { family: &free, watch: self.watch, unit: 1, extra_line: 0 };
+        if let Some(first) = search.first_set(&designs) {
+            let (fewest, bound) = match search.prove(first, designs) {
+                Outcome::Found { best, bound } => (best, bound),
+                _ => return Outcome::Open,
+            };
+            let most = self.family.terms.lines_max.map_or(i64::MAX, |m| m as i64);
+            if fewest.total <= most {
+                // There is a set after all: go on from it.
+                return match self.family.total(&fewest.picks) {
+                    Some(total) => {
+                        let best = Incumbent { total, picks: fewest.picks };
+                        let all = self.family.spaces.iter().map(|s| Designs::All(s)).collect();
+                        let extra_line = self.family.terms.line.max(self.unit);
+                        Search { extra_line, ..*self }.prove(best, all)
+                    }
+                    None => Outcome::Open,
+                };
+            }
+            return if bound > most {
+                Outcome::TooManyLines(bound.max(0) as u64)
+            } else {
+                Outcome::Open
+            };
+        }
+        self.shortage(&designs)
+    }
+
+    /// The set that lacks the fewest units, by the integer program over every design.
+    fn shortage(&self, designs: &[Designs<'s, 'a>]) -> Outcome {
+        let mut listings = Vec::new();
+        for of in designs {
+            let space = of.space();
+            let costs = crate::search::Costs::proportional(
+                self.family.market,
+                vec![0i64; self.family.market.offers()],
+                0,
+                vec![0; self.family.market.adjustments.len()],
+            );
+            match space.listing(&costs, i64::HUGE, MOST_SOLVED) {
+                Some(listing) => listings.push(listing),
+                None => return Outcome::Open,
+            }
+        }
+        let model = ChainModel::new(self.family, &listings, Aim::Shortage);
+        let Ending::Optimal(values) = solve_program(&model.program(), self.time_left()) else {
+            return Outcome::Open;
+        };
+        let Some(picks) = model.picks(&values) else { return Outcome::Open };
+        let some: Vec<Option<Pick>> = picks.into_iter().map(Some).collect();
+        let demand: Demand = self.family.demand(&some, None);
+        let short: Vec<(OfferId, u64)> = demand
+            .into_iter()
+            .filter(|&(offer, needed)| self.family.buy(offer, needed).is_none())
+            .collect();
+        if short.is_empty() { Outcome::Open } else { Outcome::OutOfStock(short) }
+    }
+}
+
+/// The largest amount of which every total is a multiple.
+fn granularity(family: &Family<'_, '_>) -> i64 {
+    let mut common = 0;
+    let mut take = |amount: i64| common = gcd(common, amount.abs());
+    take(family.terms.line);
+    take(family.terms.placement);
+    for offer in 0..family.market.offers() as u32 {
+        for &(_, each) in &family.market.tariff(OfferId(offer)).breaks {
+            take(each);
+        }
+    }
+    family.market.adjustments.iter().for_each(|a| take(a.1));
+    common.max(1)
+}
+
+const fn gcd(mut a: i64, mut b: i64) -> i64 {
+    while b != 0 {
+        (a, b) = (b, a % b);
+    }
+    a
+}

@@ -1,0 +1,407 @@
+//! What is left of an output's designs once most are proved useless: explicit lists of pairs and
+//! networks a frame, small enough to be gone through again and again.
+
+use super::combos::Combo;
+use super::costs::{Amount, Costs};
+use super::market::OfferId;
+use super::networks::{NetChoice, NetVisitor, Walk};
+use super::oracle::{Pair, PairFront, Pick, front_of};
+use super::space::{NetSpace, OutputSpace};
+
+/// A reference and an amplifier.
+#[derive(Clone, Copy, Debug)]
+pub struct ListedPair {
+    /// Reference.
+    pub reference: u32,
+    /// Amplifier.
+    pub amplifier: u32,
+    /// Sum of their errors.
+    pub error: f64,
+    /// Sum of their static errors.
+    pub statics: f64,
+}
+
+/// A network within a frame.
+#[derive(Clone, Copy, Debug)]
+pub struct ListedNetwork {
+    /// Its combination.
+    pub combo: u32,
+    /// How many elements.
+    pub count: u8,
+    /// Offers of its slots.
+    pub offers: [OfferId; 3],
+    /// The largest error of a pair beside it.
+    pub room: f64,
+    /// The largest static error of a pair beside it.
+    pub statics_room: f64,
+}
+
+impl ListedNetwork {
+    /// Distinct offers with their counts.
+    pub fn uses(&self) -> impl Iterator<Item = (OfferId, u32)> + '_ {
+        runs(&self.offers[..self.count as usize])
+    }
+}
+
+/// Distinct offers of a network with their counts; equal offers stand side by side.
+pub fn runs(offers: &[OfferId]) -> impl Iterator<Item = (OfferId, u32)> + '_ {
+    offers.chunk_by(|a, b| a == b).map(|run| (run[0], run.len() as u32))
+}
+
+/// The lists of one frame.
+#[derive(Clone, Debug)]
+pub struct ListedFrame {
+    /// The frame, as an index in the space.
+    pub frame: u32,
+    /// Pairs left.
+    pub pairs: Vec<ListedPair>,
+    /// Networks left.
+    pub networks: Vec<ListedNetwork>,
+}
+
+/// The designs of one output that are left, as pairs and networks a frame.
+#[derive(Clone, Debug)]
+pub struct Listing<'s, 'a> {
+    /// Where they come from.
+    pub space: &'s OutputSpace<'a>,
+    /// The frames that have any.
+    pub frames: Vec<ListedFrame>,
+}
+
+impl<'a> OutputSpace<'a> {
+    /// Lists every design that costs at most `ceiling` (and parts of dearer ones). `None` when
+    /// more than `most_rows` pairs and networks would be listed.
+    #[must_use]
+    pub fn listing<C: Amount>(
+        &self,
+        costs: &Costs<C>,
+        ceiling: C,
+        most_rows: usize,
+    ) -> Option<Listing<'_, 'a>> {
+        let mut frames: Vec<ListedFrame> = Vec::new();
+        let mut rows = 0;
+        for net in &self.nets {
+            let mut collector = Collector::new(self, net, costs, ceiling, most_rows - rows);
+            self.walk(net, costs, Walk::All, &mut collector);
+            if collector.too_many {
+                return None;
+            }
+            let networks = collector.networks;
+            for (front, networks) in collector.frames.into_iter().zip(networks) {
+                let Some(least_network) =
+                    networks.iter().map(|n| network_cost(costs, n)).reduce(smaller)
+                else {
+                    continue;
+                };
+                let pairs =
+                    self.pairs_below(front.index, costs, ceiling, front.cost + least_network);
+                rows += networks.len() + pairs.len();
+                if rows > most_rows {
+                    return None;
+                }
+                frames.push(ListedFrame { frame: front.index as u32, pairs, networks });
+            }
+        }
+        Some(Listing { space: self, frames }.reduced(costs, ceiling))
+    }
+
+    /// Pairs of a frame that cost at most `ceiling` on top of `besides`.
+    fn pairs_below<C: Amount>(
+        &self,
+        index: usize,
+        costs: &Costs<C>,
+        ceiling: C,
+        besides: C,
+    ) -> Vec<ListedPair> {
+        let frame = &self.frames[index];
+        let amplifiers: Vec<_> = frame
+            .amplifiers
+            .iter()
+            .map(|a| (a, costs.of(self.market.amplifier_offer(a.index), 1)))
+            .collect();
+        let mut pairs = Vec::new();
+        for r in &frame.references {
+            let before = besides + costs.of(self.market.reference_offer(r.index), 1);
+            if before > ceiling {
+                continue;
+            }
+            for &(a, cost) in &amplifiers {
+                if before + cost <= ceiling && self.pairing.suit(r.index, a.index) {
+                    pairs.push(ListedPair {
+                        reference: r.index,
+                        amplifier: a.index,
+                        error: r.error + a.error,
+                        statics: r.statics + a.statics,
+                    });
+                }
+            }
+        }
+        pairs
+    }
+}
+
+fn smaller<C: Amount>(a: C, b: C) -> C {
+    if b < a { b } else { a }
+}
+
+fn network_cost<C: Amount>(costs: &Costs<C>, network: &ListedNetwork) -> C {
+    network
+        .uses()
+        .fold(costs.component.times(u32::from(network.count)), |sum, (o, n)| sum + costs.of(o, n))
+}
+
+struct CollectedFrame<C> {
+    index: usize,
+    cost: C,
+    pairs: PairFront<C>,
+    least: C,
+}
+
+struct Collector<'s, 'a, C> {
+    space: &'s OutputSpace<'a>,
+    component: C,
+    ceiling: C,
+    adjusted: bool,
+    frames: Vec<CollectedFrame<C>>,
+    networks: Vec<Vec<ListedNetwork>>,
+    left: usize,
+    too_many: bool,
+}
+
+impl<'s, 'a, C: Amount> Collector<'s, 'a, C> {
+    fn new(
+        space: &'s OutputSpace<'a>,
+        net: &NetSpace,
+        costs: &Costs<C>,
+        ceiling: C,
+        left: usize,
+    ) -> Self {
+        let frames: Vec<_> = net
+            .frames
+            .iter()
+            .filter_map(|&index| {
+                let frame = &space.frames[index];
+                let cost = space.frame_cost(frame, costs);
+                let pairs = space.pair_front(frame, costs);
+                let least = cost + pairs.least()?;
+                (least <= ceiling).then_some(CollectedFrame { index, cost, pairs, least })
+            })
+            .collect();
+        Self {
+            space,
+            component: costs.component,
+            ceiling,
+            adjusted: net.adjusted,
+            networks: vec![Vec::new(); frames.len()],
+            frames,
+            left,
+            too_many: false,
+        }
+    }
+}
+
+impl<C: Amount> NetVisitor<C> for Collector<'_, '_, C> {
+    fn ceiling(&self, combo: &Combo) -> Option<C> {
+        if self.too_many {
+            return None;
+        }
+        let least = self.frames.iter().map(|f| f.least).reduce(smaller)?;
+        let least = least + self.component.times(u32::from(combo.count));
+        (least <= self.ceiling).then(|| self.ceiling - least)
+    }
+
+    fn take(&mut self, combo: &Combo, choice: &NetChoice<C>) {
+        let network = choice.cost + self.component.times(u32::from(combo.count));
+        let systematic = if self.adjusted { 0.0 } else { combo.mismatch };
+        for (front, list) in self.frames.iter().zip(&mut self.networks) {
+            if network + front.least > self.ceiling {
+                continue;
+            }
+            let frame = &self.space.frames[front.index];
+            let Some(room) = self.space.room(&frame.own, systematic) else { continue };
+            let (room, statics_room) = (room - choice.error, frame.statics_room - choice.statics);
+            let fits = front
+                .pairs
+                .within(room, statics_room)
+                .is_some_and(|pair| network + front.cost + pair.cost <= self.ceiling);
+            if fits {
+                if self.left == 0 {
+                    self.too_many = true;
+                    return;
+                }
+                self.left -= 1;
+                list.push(ListedNetwork {
+                    combo: choice.combo,
+                    count: combo.count,
+                    offers: choice.offers,
+                    room,
+                    statics_room,
+                });
+            }
+        }
+    }
+}
+
+/// One listed frame with its rows priced.
+struct Priced<C> {
+    cost: C,
+    pairs: Vec<C>,
+    networks: Vec<C>,
+}
+
+impl Listing<'_, '_> {
+    /// How many pairs and networks are listed.
+    #[must_use]
+    pub fn rows(&self) -> usize {
+        self.frames.iter().map(|f| f.pairs.len() + f.networks.len()).sum()
+    }
+
+    fn price<C: Amount>(&self, listed: &ListedFrame, costs: &Costs<C>) -> Priced<C> {
+        let frame = &self.space.frames[listed.frame as usize];
+        Priced {
+            cost: self.space.frame_cost(frame, costs),
+            pairs: listed
+                .pairs
+                .iter()
+                .map(|p| self.space.pair_cost(costs, p.reference, p.amplifier))
+                .collect(),
+            networks: listed.networks.iter().map(|n| network_cost(costs, n)).collect(),
+        }
+    }
+
+    fn is_tight(&self, listed: &ListedFrame) -> bool {
+        self.space.frames[listed.frame as usize].tight
+    }
+
+    fn front<C: Amount>(&self, listed: &ListedFrame, priced: &Priced<C>) -> PairFront<C> {
+        let pairs = listed
+            .pairs
+            .iter()
+            .zip(&priced.pairs)
+            .filter(|&(_, &cost)| cost < C::HUGE)
+            .map(|(p, &cost)| Pair {
+                error: p.error,
+                statics: p.statics,
+                cost,
+                reference: p.reference,
+                amplifier: p.amplifier,
+            })
+            .collect();
+        front_of(pairs, self.is_tight(listed))
+    }
+
+    /// The cheapest listed design, when it costs less than `below`.
+    #[must_use]
+    pub fn cheapest<C: Amount>(&self, costs: &Costs<C>, below: C) -> Option<(C, Pick)> {
+        let mut best: Option<(C, Pick)> = None;
+        let mut ceiling = below;
+        for listed in &self.frames {
+            let priced = self.price(listed, costs);
+            let front = self.front(listed, &priced);
+            let Some(least) = front.least() else { continue };
+            for (network, &cost) in listed.networks.iter().zip(&priced.networks) {
+                let besides = priced.cost + cost;
+                if besides + least >= ceiling {
+                    continue;
+                }
+                if let Some(pair) = front.within(network.room, network.statics_room) {
+                    let whole = besides + pair.cost;
+                    if whole < ceiling {
+                        ceiling = whole;
+                        let pick = Pick {
+                            frame: listed.frame,
+                            reference: pair.reference,
+                            amplifier: pair.amplifier,
+                            combo: network.combo,
+                            offers: network.offers,
+                        };
+                        best = Some((whole, pick));
+                    }
+                }
+            }
+        }
+        best
+    }
+
+    /// The listing without the pairs and networks through which every design costs more than
+    /// `ceiling`.
+    #[must_use]
+    pub fn reduced<C: Amount>(&self, costs: &Costs<C>, ceiling: C) -> Self {
+        let frames = self
+            .frames
+            .iter()
+            .filter_map(|listed| {
+                let priced = self.price(listed, costs);
+                let front = self.front(listed, &priced);
+                let networks: Vec<(ListedNetwork, C)> = listed
+                    .networks
+                    .iter()
+                    .zip(&priced.networks)
+                    .filter(|(n, cost)| {
+                        front
+                            .within(n.room, n.statics_room)
+                            .is_some_and(|p| priced.cost + **cost + p.cost <= ceiling)
+                    })
+                    .map(|(n, &cost)| (*n, cost))
+                    .collect();
+                let beside = NetworkFront::new(&networks, self.is_tight(listed));
+                let pairs: Vec<ListedPair> = listed
+                    .pairs
+                    .iter()
+                    .zip(&priced.pairs)
+                    .filter(|(p, cost)| {
+                        beside
+                            .beside(p.error, p.statics)
+                            .is_some_and(|least| priced.cost + **cost + least <= ceiling)
+                    })
+                    .map(|(p, _)| *p)
+                    .collect();
+                let networks = networks.into_iter().map(|(n, _)| n).collect();
+                (!pairs.is_empty()).then_some(ListedFrame { frame: listed.frame, pairs, networks })
+            })
+            .collect();
+        Self { space: self.space, frames }
+    }
+}
+
+/// The cheapest network beside a pair.
+enum NetworkFront<C> {
+    /// Room falling, the least cost so far.
+    Staircase(Vec<(f64, C)>),
+    /// Cost rising, with both rooms.
+    ByCost(Vec<(f64, f64, C)>),
+}
+
+impl<C: Amount> NetworkFront<C> {
+    fn new(networks: &[(ListedNetwork, C)], tight: bool) -> Self {
+        let order = |a: &C, b: &C| a.partial_cmp(b).unwrap_or(std::cmp::Ordering::Equal);
+        if tight {
+            let mut all: Vec<_> =
+                networks.iter().map(|(n, c)| (n.room, n.statics_room, *c)).collect();
+            all.sort_by(|a, b| order(&a.2, &b.2));
+            return Self::ByCost(all);
+        }
+        let mut all: Vec<_> = networks.iter().map(|(n, c)| (n.room, *c)).collect();
+        all.sort_by(|a, b| b.0.total_cmp(&a.0).then(order(&a.1, &b.1)));
+        let mut least: Option<C> = None;
+        for entry in &mut all {
+            let so_far = least.map_or(entry.1, |l| smaller(l, entry.1));
+            least = Some(so_far);
+            entry.1 = so_far;
+        }
+        Self::Staircase(all)
+    }
+
+    fn beside(&self, error: f64, statics: f64) -> Option<C> {
+        match self {
+            Self::Staircase(all) => {
+                let fitting = all.partition_point(|&(room, _)| room >= error);
+                fitting.checked_sub(1).map(|last| all[last].1)
+            }
+            Self::ByCost(all) => all
+                .iter()
+                .find(|&&(room, statics_room, _)| room >= error && statics_room >= statics)
+                .map(|&(_, _, cost)| cost),
+        }
+    }
+}

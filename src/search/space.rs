@@ -1,0 +1,337 @@
+//! All designs of one output, as flat arrays of error figures.
+//!
+//! The frames (reference voltage, lift, adjustment) stand outside; within a frame a design passes
+//! when the errors of reference, amplifier and network fit one budget (and, with an adjustment,
+//! their static errors fit its range), and reference and amplifier suit each other.
+
+use rayon::prelude::*;
+
+use crate::circuit::{Contribution, Frame, LiftStack};
+use crate::quantity::{Exact, Volts};
+use crate::request::{Budget, Output, Unstated};
+
+use super::combos::{Combo, Goal, ValueTable};
+use super::errors::{TypeErrors, type_errors};
+use super::market::{Market, distinct_voltages};
+use super::pairing::Pairing;
+
+/// A reference or amplifier within a frame.
+#[derive(Clone, Copy, Debug)]
+pub struct PartIn {
+    /// Index in the market's list of its kind.
+    pub index: u32,
+    /// What it adds to the budget (ppm, or ppm² for rss and gum).
+    pub error: f64,
+    /// What it adds to the static sum, ppm.
+    pub statics: f64,
+}
+
+/// One frame of an output.
+#[derive(Debug)]
+pub struct FrameSpace<'a> {
+    /// The circuit's view of it.
+    pub frame: Frame<'a>,
+    /// Lift (index in the market) and count.
+    pub lift: Option<(u32, u32)>,
+    /// Adjustment (index in the market).
+    pub adjustment: Option<u32>,
+    /// Index of its networks in [`OutputSpace::nets`].
+    pub net: usize,
+    /// What the frame itself adds.
+    pub own: Contribution,
+    /// Static ppm that the parts may have together; infinite without an adjustment.
+    pub statics_room: f64,
+    /// Whether some design of the frame can exceed the room.
+    pub tight: bool,
+    /// References that stand in this frame, by error.
+    pub references: Vec<PartIn>,
+    /// Amplifiers that stand in this frame, by error.
+    pub amplifiers: Vec<PartIn>,
+}
+
+/// The networks of all frames with one reference voltage, with or without adjustment.
+#[derive(Debug)]
+pub struct NetSpace {
+    /// Whether the frames have an adjustment.
+    pub adjusted: bool,
+    /// Value combinations near enough to R*.
+    pub combos: Vec<Combo>,
+    /// Frames that use these networks.
+    pub frames: Vec<usize>,
+}
+
+/// All designs of one output.
+#[derive(Debug)]
+pub struct OutputSpace<'a> {
+    /// The market.
+    pub market: &'a Market<'a>,
+    /// Which reference suits which amplifier.
+    pub pairing: &'a Pairing,
+    /// Element errors by type, without and with an adjustment.
+    pub errors: &'a [Vec<TypeErrors>; 2],
+    /// The output.
+    pub output: &'a Output,
+    /// Budget method.
+    pub method: Budget,
+    /// Largest total, the contract's tolerance included.
+    pub most_ppm: f64,
+    /// Frames in which some reference and some amplifier stand.
+    pub frames: Vec<FrameSpace<'a>>,
+    /// Their networks.
+    pub nets: Vec<NetSpace>,
+}
+
+/// What all outputs of a request have in common.
+#[derive(Debug)]
+pub struct Common {
+    /// Which reference suits which amplifier.
+    pub pairing: Pairing,
+    /// Element errors by type, without and with an adjustment.
+    pub errors: [Vec<TypeErrors>; 2],
+    ohms: Vec<f64>,
+    listed: Vec<u32>,
+    made_only: Vec<u32>,
+    voltages: Vec<Exact<Volts>>,
+}
+
+impl Common {
+    /// Works out what does not depend on the output.
+    #[must_use]
+    pub fn new(market: &Market<'_>) -> Self {
+        // Pairs and element errors are asked for in any frame, with and without an adjustment.
+        let request = market.request;
+        let frame = |adjustment| {
+            request
+                .outputs
+                .first()
+                .and_then(|o| Frame::new(request, o, Volts::new(1.0), None, adjustment).ok())
+        };
+        let plain = frame(None);
+        let adjusted = market.adjustments.first().and_then(|a| frame(Some(a.0)));
+        let errors = [&plain, &adjusted]
+            .map(|frame| frame.as_ref().map_or_else(Vec::new, |f| type_errors(market, f)));
+        let (listed, made_only) = (0..market.values.len() as u32)
+            .partition(|&v| market.stocked(v).iter().any(|s| !s.made_to_order));
+        Self {
+            pairing: plain.as_ref().map_or_else(Pairing::default, |f| Pairing::new(market, f)),
+            errors,
+            ohms: market.values.iter().map(|v| v.value().value()).collect(),
+            listed,
+            made_only,
+            voltages: distinct_voltages(&market.references),
+        }
+    }
+}
+
+/// The relative tolerance with which a bound holds.
+const TOLERANCE: f64 = 1e-9;
+
+impl<'a> OutputSpace<'a> {
+    /// Evaluates every offer once in every frame of an output. `most_ppm` is the largest total of
+    /// interest: the output's accuracy, or more to find how far off an impossible one is.
+    #[must_use]
+    pub fn new(
+        market: &'a Market<'a>,
+        common: &'a Common,
+        output: &'a Output,
+        most_ppm: f64,
+    ) -> Self {
+        let mut space = Self {
+            market,
+            pairing: &common.pairing,
+            errors: &common.errors,
+            output,
+            method: market.request.budget,
+            most_ppm: most_ppm / (1.0 - TOLERANCE),
+            frames: Vec::new(),
+            nets: Vec::new(),
+        };
+        let mut outlines = Vec::new();
+        for &voltage in &common.voltages {
+            for lift in lift_choices(market) {
+                for adjustment in
+                    std::iter::once(None).chain((0..market.adjustments.len() as u32).map(Some))
+                {
+                    outlines.push((voltage.value(), lift, adjustment));
+                }
+            }
+        }
+        let frames: Vec<FrameSpace<'a>> = outlines
+            .into_par_iter()
+            .filter_map(|(voltage, lift, adjustment)| space.frame(voltage, lift, adjustment))
+            .collect();
+        space.attach_networks(common, frames);
+        space
+    }
+
+    /// One frame with the parts that stand in it, or none.
+    fn frame(
+        &self,
+        voltage: Volts,
+        lift: Option<(u32, u32)>,
+        adjustment: Option<u32>,
+    ) -> Option<FrameSpace<'a>> {
+        let market = self.market;
+        let stack = lift.map(|(of, count)| LiftStack { of: market.lifts[of as usize], count });
+        let step = adjustment.map(|index| market.adjustments[index as usize].0);
+        let frame = Frame::new(market.request, self.output, voltage, stack, step).ok()?;
+        if !frame.own_failures().is_empty() {
+            return None;
+        }
+        let refuse = market.request.rules.unstated == Unstated::Reject;
+        let own = frame.own_contribution();
+        if own.unstated && refuse {
+            return None;
+        }
+        let statics_room =
+            step.map_or(f64::INFINITY, |step| step.range.value() / (1.0 - TOLERANCE) - own.statics);
+        let room = self.room(&own, 0.0)?;
+        let keep = |index: usize, c: Contribution| {
+            let fits = c.random <= room && c.statics <= statics_room && !(c.unstated && refuse);
+            fits.then_some(PartIn { index: index as u32, error: c.random, statics: c.statics })
+        };
+        let mut references: Vec<PartIn> = market
+            .references
+            .iter()
+            .enumerate()
+            .filter(|(_, r)| r.output.value() == voltage)
+            .filter(|(_, r)| frame.reference_failures(r).is_empty())
+            .filter_map(|(index, r)| keep(index, frame.reference_contribution(r)))
+            .collect();
+        if references.is_empty() {
+            return None;
+        }
+        let mut amplifiers: Vec<PartIn> = market
+            .amplifiers
+            .iter()
+            .enumerate()
+            .filter(|(_, a)| frame.amplifier_failures(a).is_empty())
+            .filter_map(|(index, a)| keep(index, frame.amplifier_contribution(a)))
+            .collect();
+        if amplifiers.is_empty() {
+            return None;
+        }
+        let by_error =
+            |a: &PartIn, b: &PartIn| a.error.total_cmp(&b.error).then(a.index.cmp(&b.index));
+        references.sort_by(by_error);
+        amplifiers.sort_by(by_error);
+        Some(FrameSpace {
+            frame,
+            lift,
+            adjustment,
+            net: usize::MAX,
+            own,
+            statics_room,
+            tight: false,
+            references,
+            amplifiers,
+        })
+    }
+
+    /// What is left of the budget beside a frame's own share and a network's systematic error:
+    /// ppm, or ppm² for rss and gum. `None` when nothing is.
+    #[must_use]
+    pub fn room(&self, own: &Contribution, systematic: f64) -> Option<f64> {
+        let room = match self.method {
+            Budget::WorstCase => self.most_ppm - own.random - systematic,
+            Budget::Rss | Budget::Gum { .. } => {
+                let linear = self.most_ppm - own.systematic - systematic;
+                if linear < 0.0 {
+                    return None;
+                }
+                linear * linear - own.random
+            }
+        };
+        (room >= 0.0).then_some(room)
+    }
+
+    /// Finds the networks of every reference voltage, as far off R* as the slackest frame bears.
+    fn attach_networks(&mut self, common: &Common, frames: Vec<FrameSpace<'a>>) {
+        let mut keys: Vec<(Volts, bool)> =
+            frames.iter().map(|f| (f.frame.vref(), f.adjustment.is_some())).collect();
+        keys.sort_by(|a, b| a.0.value().total_cmp(&b.0.value()).then(a.1.cmp(&b.1)));
+        keys.dedup();
+        self.nets = keys
+            .par_iter()
+            .map(|&(voltage, adjusted)| {
+                let users = || {
+                    frames.iter().enumerate().filter(move |(_, f)| {
+                        f.frame.vref() == voltage && f.adjustment.is_some() == adjusted
+                    })
+                };
+                let most_ppm = users().map(|(_, f)| self.mismatch_room(f)).fold(-1.0, f64::max);
+                let table = ValueTable {
+                    ohms: &common.ohms,
+                    listed: &common.listed,
+                    made_only: &common.made_only,
+                };
+                let goal = Goal {
+                    vref: voltage.value(),
+                    target_ohms: voltage.value() / self.output.current.value().value(),
+                    most_ppm,
+                    elements: self.market.request.network_elements,
+                };
+                let combos = if most_ppm < 0.0 { Vec::new() } else { table.within(goal) };
+                NetSpace { adjusted, combos, frames: users().map(|(index, _)| index).collect() }
+            })
+            .collect();
+        self.frames = frames;
+        for (net_index, net) in self.nets.iter().enumerate() {
+            let dearest = self.most_network_statics(net);
+            for &index in &net.frames {
+                let frame = &mut self.frames[index];
+                frame.net = net_index;
+                let most = |parts: &[PartIn]| parts.iter().map(|p| p.statics).fold(0.0, f64::max);
+                let worst = most(&frame.references) + most(&frame.amplifiers) + dearest;
+                frame.tight = worst > frame.statics_room;
+            }
+        }
+    }
+
+    /// The largest mismatch that can pass in a frame beside its best parts, in ppm.
+    fn mismatch_room(&self, frame: &FrameSpace<'_>) -> f64 {
+        let least = |parts: &[PartIn], of: fn(&PartIn) -> f64| {
+            parts.iter().map(of).fold(f64::INFINITY, f64::min)
+        };
+        let parts =
+            |of: fn(&PartIn) -> f64| least(&frame.references, of) + least(&frame.amplifiers, of);
+        if frame.adjustment.is_some() {
+            return frame.statics_room - parts(|p| p.statics);
+        }
+        let errors = parts(|p| p.error);
+        match self.method {
+            Budget::WorstCase => self.most_ppm - frame.own.random - errors,
+            Budget::Rss | Budget::Gum { .. } => {
+                self.most_ppm - frame.own.systematic - (frame.own.random + errors).sqrt()
+            }
+        }
+    }
+
+    /// An upper bound on the static sum of any network: enough to see that a range never binds.
+    fn most_network_statics(&self, net: &NetSpace) -> f64 {
+        if !net.adjusted {
+            return 0.0;
+        }
+        net.combos
+            .iter()
+            .map(|combo| {
+                let elements = combo.slots().iter().map(|slot| {
+                    self.market
+                        .stocked(slot.value)
+                        .iter()
+                        .map(|s| self.errors[1][s.of as usize].statics_of(slot))
+                        .fold(0.0, f64::max)
+                });
+                combo.mismatch + elements.sum::<f64>()
+            })
+            .fold(0.0, f64::max)
+    }
+}
+
+fn lift_choices(market: &Market<'_>) -> Vec<Option<(u32, u32)>> {
+    let mut choices = vec![None];
+    for (index, lift) in market.lifts.iter().enumerate() {
+        choices.extend((1..=lift.in_series_max).map(|count| Some((index as u32, count))));
+    }
+    choices
+}
