@@ -64,12 +64,8 @@ impl Check {
     }
 
     /// The largest value that an `at_most` of this bound lets hold, tolerance included.
-    pub(super) fn most(&self) -> f64 {
-        let absolute = match self.unit {
-            Volts::UNIT => Volts::ABSOLUTE,
-            _ => 0.0,
-        };
-        (self.bound / (1.0 - RELATIVE)).max(self.bound + absolute)
+    pub(super) fn most<Q: Side>(&self) -> f64 {
+        (self.bound / (1.0 - RELATIVE)).max(self.bound + Q::ABSOLUTE)
     }
 
     /// The one with the smaller margin.

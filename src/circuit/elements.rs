@@ -63,8 +63,8 @@ impl Frame<'_> {
                 LimitFn::Element(check) => {
                     let Figure::Known(check) = check(self, &element) else { continue };
                     match limit.unit {
-                        "W" => bounds.watts = bounds.watts.min(Watts::new(check.most())),
-                        _ => bounds.volts = Some(Volts::new(check.most())),
+                        "W" => bounds.watts = bounds.watts.min(Watts::new(check.most::<Watts>())),
+                        _ => bounds.volts = Some(Volts::new(check.most::<Volts>())),
                     }
                 }
                 LimitFn::Placed(check) => {
