@@ -1,5 +1,5 @@
 //! The full figures of one design: every term with its note, every limit with its margin. The
-//! plain path: it works from the design alone and shares no sum with the search.
+//! plain path: it works from the design alone and sums the listed terms, not the parts' shares.
 
 use std::collections::BTreeSet;
 
@@ -12,7 +12,7 @@ use super::compliance::compliance;
 use super::contribution::{Contribution, total_of};
 use super::design::Design;
 use super::evaluation::{Evaluation, LimitLine, NotStated, TermLine};
-use super::figure::{Figure, Size};
+use super::figure::{Figure, Note, Size};
 use super::frame::Frame;
 use super::limits::{LIMITS, LimitDef, LimitFn, LimitId};
 use super::terms::{TERMS, TermDef, TermFn};
@@ -97,7 +97,7 @@ impl<'w> Work<'w> {
             };
             match figure {
                 Figure::Known(Size { ppm, note }) => {
-                    let note = note.map(super::figure::Note::text);
+                    let note = note.map(Note::text);
                     lines.push(self.line(term, ppm, ppm, note, &mut statics));
                 }
                 Figure::NotStated(field) => self.missing(order_code, field),

@@ -1,7 +1,7 @@
 //! The terms of the voltage reference.
 
 use crate::catalog::{Ageing, GrowthLaw, Reference, TempcoMethod};
-use crate::quantity::{Celsius, Kelvins, Ppm, Seconds};
+use crate::quantity::{Celsius, Kelvins, Ppm, Seconds, Watts};
 use crate::request::BoxReading;
 
 use super::figure::{Figure, Note, Size, stated};
@@ -55,7 +55,7 @@ pub(super) fn self_heating(frame: &Frame<'_>, reference: &Reference) -> Figure<S
         Some(at) => (distance(frame.reference_supply, at.reference_supply) * through, at.note()),
         None => {
             let most = frame.reference_supply.high() * through - frame.vref * frame.current;
-            (most.max(crate::quantity::Watts::ZERO), None)
+            (most.max(Watts::ZERO), None)
         }
     };
     let zero_anyway = power.value() == 0.0 || reference.tempco.value() == 0.0;
