@@ -2,6 +2,7 @@
 //! records in which every fault has been looked for.
 
 use std::collections::BTreeMap;
+use std::fmt;
 use std::path::PathBuf;
 use std::sync::Arc;
 
@@ -53,6 +54,12 @@ pub struct Place {
     pub line: usize,
     /// Column in characters, from 1.
     pub column: usize,
+}
+
+impl fmt::Display for Place {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(f, "{}:{}:{}", self.file.display(), self.line, self.column)
+    }
 }
 
 /// How far a part is from the end of its sale.

@@ -8,7 +8,7 @@ use crate::quantity::shown;
 
 use super::build::{Offer, build};
 use super::codes::code_pattern;
-use super::doubts::{grade_doubts, type_doubts};
+use super::doubts::add_doubts;
 use super::fault::{Fault, Severity};
 use super::model::{Kind, Place};
 use super::schema::{Fallback, FieldForm, KIND_WORDS, field_named, fields, why_not};
@@ -88,10 +88,7 @@ fn read_types(node: &Node, name: &str, sink: &mut Sink) -> Option<Vec<Offer>> {
             sink.error(node.at, "", "the record cannot be built", "please report this record");
             return None;
         }
-        for view in views {
-            type_doubts(*view, node.at, sink);
-        }
-        grade_doubts(views, sink);
+        add_doubts(views, node.at, sink);
     }
     Some(offers)
 }
@@ -132,17 +129,11 @@ fn read_entries(kind: Kind, written: &[(Key, Node)], prefix: &str, sink: &mut Si
         let path = if in_grade { format!("{prefix}.{name}") } else { name.to_owned() };
         let field = field_named(kind, name);
         let grade_name = in_grade && name == "grade";
-        if field.is_some() || grade_name {
-            if let Some(first) = lines.insert(name, key.at.line) {
-                let message = format!("`{name}` stands twice");
-                sink.error(
-                    key.at,
-                    &path,
-                    message,
-                    format!("keep one; the other is on line {first}"),
-                );
-                continue;
-            }
+        let known = field.is_some() || grade_name;
+        if known && let Some(first) = lines.insert(name, key.at.line) {
+            let hint = format!("keep one; the other is on line {first}");
+            sink.error(key.at, &path, format!("`{name}` stands twice"), hint);
+            continue;
         }
         match field {
             Some(field) if !in_grade || field.in_grades() => {
@@ -286,7 +277,7 @@ fn check_relations(view: View<'_>, sink: &mut Sink) {
 
 /// Faults found on a merged type name its grade, unless they stand in the shared fields; those
 /// are found again for every grade and kept once.
-fn label_by_grade(view: View<'_>, name: &str, before: usize, sink: &mut Sink) {
+pub(super) fn label_by_grade(view: View<'_>, name: &str, before: usize, sink: &mut Sink) {
     let found = sink.faults.split_off(before.min(sink.faults.len()));
     for mut fault in found {
         let own = fault.field.as_deref().is_some_and(|field| field.starts_with("grades["));

@@ -411,10 +411,15 @@ fn read_values(node: &Node, path: &str, sink: &mut Sink) -> Option<ValueSet> {
         }
         _ => {
             let known = ["series", "from", "to", "list", "any", "digits"];
+            let before = sink.faults.len();
             for (key, _) in entries.iter().filter(|(key, _)| !known.contains(&key.text.as_str())) {
                 unknown_field(key, &format!("{path}.{}", key.text), known, sink);
             }
-            sink.error(node.at, path, "none of `series`, `list`, `any`", format!("write {forms}"));
+            // A misspelt name is the likelier reason, and told alone.
+            if sink.faults.len() == before {
+                let message = "none of `series`, `list`, `any`";
+                sink.error(node.at, path, message, format!("write {forms}"));
+            }
             None
         }
     }

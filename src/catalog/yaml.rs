@@ -9,7 +9,8 @@ use std::borrow::Cow;
 use std::fmt;
 
 use serde::de::{
-    Deserialize, DeserializeSeed, Deserializer, EnumAccess, MapAccess, SeqAccess, Visitor,
+    Deserialize, DeserializeSeed, Deserializer, EnumAccess, IgnoredAny, MapAccess, SeqAccess,
+    Visitor,
 };
 
 use super::places::Places;
@@ -26,8 +27,8 @@ pub struct Spot {
 /// One node of a document.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Node {
-    /// Where it starts; where the library does not tell (an empty value, a folded or escaped
-    /// text), the place of its key. What an alias stands for has the place of its anchor.
+    /// Where it starts; where the library does not tell (an empty value or list, a folded or
+    /// escaped text), the place of its key. What an alias stands for has the place of its anchor.
     pub at: Spot,
     /// What it is.
     pub value: NodeValue,
@@ -74,6 +75,7 @@ pub struct YamlFault {
 pub fn read_document(text: &str, first_line: usize) -> Result<Option<Node>, YamlFault> {
     let places = Places::new(text, first_line);
     refuse_control_characters(text, &places)?;
+    refuse_deep_brackets(text, &places)?;
     refuse_repeated_anchors(text, &places)?;
     let mut nodes_left = text.len() + SPARE_NODES;
     let shape = ShapeSeed { nodes_left: &mut nodes_left, key: false }
@@ -118,6 +120,33 @@ fn refuse_control_characters(text: &str, places: &Places<'_>) -> Result<(), Yaml
         hint: Some("remove it, or write it as an escape in a double-quoted text".to_owned()),
     })
 }
+
+/// The library's time grows with the square of the depth of brackets, and it finds out only at
+/// the end. Brackets within texts count too, which no sane document notices.
+fn refuse_deep_brackets(text: &str, places: &Places<'_>) -> Result<(), YamlFault> {
+    let mut depth = 0usize;
+    for (at, byte) in text.bytes().enumerate() {
+        match byte {
+            b'[' | b'{' => depth += 1,
+            b']' | b'}' => depth = depth.saturating_sub(1),
+            _ => {}
+        }
+        if depth > DEEPEST {
+            let (message, hint) = TOO_DEEP;
+            return Err(YamlFault {
+                at: places.spot(at),
+                message: message.to_owned(),
+                hint: Some(hint.to_owned()),
+            });
+        }
+    }
+    Ok(())
+}
+
+/// More brackets than any document nests.
+const DEEPEST: usize = 256;
+
+const TOO_DEEP: (&str, &str) = ("nested too deeply", "a record needs no more than a few levels");
 
 /// The library resolves aliases wrongly once an anchor name is defined again, so a document that
 /// has aliases may define each anchor once.
@@ -328,12 +357,16 @@ impl<'de> DeserializeSeed<'de> for NodeSeed<'_> {
 
 /// The standard tags (`!!str`) do not reach a visitor; they stand right before the value.
 fn tag_before(before: &str) -> Option<&str> {
-    let mut words = before
-        .rsplit(['\n', '\r'])
-        .next()?
-        .rsplit(|c: char| c.is_whitespace() || matches!(c, '[' | '{' | ','))
-        .skip_while(|word| word.is_empty() || word.starts_with('&'));
-    words.next().filter(|word| word.starts_with('!'))
+    let ends_word = |c: char| c.is_whitespace() || matches!(c, '[' | '{' | ',');
+    let mut rest = before;
+    loop {
+        rest = rest.trim_end_matches([' ', '\t']);
+        let word = rest.rsplit(ends_word).next()?;
+        if !word.starts_with('&') {
+            return word.starts_with('!').then_some(word);
+        }
+        rest = rest.strip_suffix(word)?;
+    }
 }
 
 impl<'de> Visitor<'de> for NodeSeed<'_> {
@@ -397,14 +430,18 @@ fn explain(
     }
     let at = places.spot(offset);
     if full.starts_with("repetition limit") || full.starts_with("recursion limit") {
-        let (message, hint) = if full.starts_with("rec") {
-            ("nested too deeply", "a record needs no more than a few levels")
-        } else {
-            (MULTIPLIED, "write the values out")
-        };
+        let (message, hint) =
+            if full.starts_with("rec") { TOO_DEEP } else { (MULTIPLIED, "write the values out") };
         return YamlFault { at, message: message.to_owned(), hint: Some(hint.to_owned()) };
     }
     if full.starts_with("deserializing from YAML containing more than one document") {
+        // The library says so too when what follows the document is broken.
+        let second = serde_yaml::Deserializer::from_str(text).nth(1).map(IgnoredAny::deserialize);
+        if let Some(Err(behind)) = second
+            && behind.location().is_some()
+        {
+            return explain(&behind, text, places, first_line);
+        }
         return YamlFault {
             at,
             message: "more than one document".to_owned(),
@@ -578,6 +615,9 @@ mod tests {
             ("the control character U+0007", (2, 4))
         );
         assert_eq!(fault("a: 1\n---\nb: 2\n").message, "more than one document");
+        let behind = fault("\"a\"\nb: 1\n");
+        assert_eq!(behind.message, "not YAML: did not find expected <document start>");
+        assert_eq!(at(behind.at), (2, 1));
         assert_eq!(at(fault("a: *nobody").at), (1, 4));
     }
 
