@@ -18,6 +18,9 @@ use super::limits::{LIMITS, LimitDef, LimitFn, LimitId};
 use super::terms::{TERMS, TermDef, TermFn};
 use super::wired::{ElementChoice, Wired};
 
+/// How the note on a term ends that an adjustment removed; what it was stands before.
+pub const REMOVED_BY_ADJUSTMENT: &str = "removed by the adjustment";
+
 /// Works out the budget, the operating window and the compliance of a design.
 ///
 /// # Errors
@@ -152,7 +155,7 @@ impl<'w> Work<'w> {
             return TermLine { term: term.id, ppm: combined, note };
         }
         *statics = *statics + sum;
-        let removed = format!("{} removed by the adjustment", ppm_text(sum.value()));
+        let removed = format!("{} {REMOVED_BY_ADJUSTMENT}", ppm_text(sum.value()));
         let note = match note {
             Some(first) => format!("{first}; {removed}"),
             None => removed,

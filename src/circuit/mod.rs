@@ -24,7 +24,7 @@ pub use cautions::cautions;
 pub use contribution::{Contribution, total_of};
 pub use design::{Connection, Design, Element, LiftStack, Network};
 pub use elements::ElementBounds;
-pub use evaluate::evaluate;
+pub use evaluate::{REMOVED_BY_ADJUSTMENT, evaluate};
 pub use evaluation::{Compliance, Evaluation, LimitLine, NotStated, TermLine};
 pub use frame::Frame;
 pub use limits::{LIMITS, LimitDef, LimitId, LoadEnd};

@@ -20,6 +20,12 @@ pub struct KindCount {
 pub struct CatalogCheck {
     /// The catalogue's folder as given.
     pub folder: String,
+    /// Files read.
+    pub files: usize,
+    /// Records found, those with errors included.
+    pub records: usize,
+    /// Records with errors; they are not counted below.
+    pub left_out: usize,
     /// One entry a kind, in the order of [`Kind::ALL`].
     pub counts: Vec<KindCount>,
     /// Everything wrong or doubtful, by place.

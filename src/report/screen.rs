@@ -72,6 +72,17 @@ impl Screen {
         }
     }
 
+    /// Decides how messages are laid out: as results on a terminal; elsewhere lines are not broken,
+    /// so that a log has one line a message and can be searched.
+    #[must_use]
+    pub fn of_messages(terminal: Terminal) -> Self {
+        if terminal.is_terminal {
+            Self::of(terminal)
+        } else {
+            Self { width: usize::MAX, colour: false }
+        }
+    }
+
     /// The text with an emphasis, where colour may be used.
     #[must_use]
     pub fn paint<'a>(self, ink: Ink, text: &'a str) -> Cow<'a, str> {

@@ -13,6 +13,12 @@ pub struct CheckJson {
     pub format: u32,
     /// The catalogue's folder as given.
     pub catalog: String,
+    /// Files read.
+    pub files: usize,
+    /// Records found, those with errors included.
+    pub records: usize,
+    /// Records with errors.
+    pub left_out: usize,
     /// How many errors.
     pub errors: usize,
     /// How many doubts.
@@ -64,6 +70,9 @@ impl From<&CatalogCheck> for CheckJson {
         Self {
             format: super::FORMAT,
             catalog: check.folder.clone(),
+            files: check.files,
+            records: check.records,
+            left_out: check.left_out,
             errors: check.number_of(Severity::Error),
             doubts: check.number_of(Severity::Doubt),
             kinds: check.counts.iter().map(Into::into).collect(),

@@ -2,10 +2,10 @@
 
 use super::figures::{bar, decimals_beside, fixed_ppm, share, target};
 use super::grid::{Grid, Side};
-use super::page::{INDENT, Page, plain};
+use super::page::{INDENT, Page, plain, tied};
 use super::words;
 use crate::answers::OutputAnswer;
-use crate::circuit::{Evaluation, TermLine};
+use crate::circuit::{Evaluation, REMOVED_BY_ADJUSTMENT, TermLine};
 use crate::quantity::Ppm;
 
 /// Widest bar that still reads as one.
@@ -43,12 +43,36 @@ pub(super) fn write(page: &mut Page, output: &OutputAnswer, evaluation: &Evaluat
         grid.row([name, fixed_ppm(ppm, decimals), share(ppm, output.target), drawn]);
     }
     grid.write(page, INDENT);
-    let zero = sorted.iter().filter(|line| line.ppm.value() <= 0.0 && line.note.is_none());
+    let (removed, others): (Vec<&TermLine>, Vec<&TermLine>) =
+        sorted.iter().partition(|line| removed_size(line).is_some());
+    let zero = others.iter().filter(|line| line.ppm.value() <= 0.0 && line.note.is_none());
     let zero: Vec<String> = zero.map(name).collect();
     if !zero.is_empty() {
         page.led(INDENT, "zero: ", INDENT * 2, None, &zero.join(", "));
     }
-    write_remarks(page, &sorted);
+    write_removed(page, &removed);
+    write_remarks(page, &others);
+}
+
+/// What an adjustment removed of a term, as its remark tells.
+fn removed_size(line: &TermLine) -> Option<&str> {
+    let size = line.note.as_deref()?.strip_suffix(REMOVED_BY_ADJUSTMENT)?;
+    Some(size.trim_end())
+}
+
+/// Terms that an adjustment removed, in one paragraph.
+fn write_removed(page: &mut Page, lines: &[&TermLine]) {
+    let removed: Vec<String> = lines
+        .iter()
+        .filter_map(|line| {
+            let size = plain(removed_size(line)?);
+            Some(tied(&format!("{} {size}", words(line.term.def().name))))
+        })
+        .collect();
+    if !removed.is_empty() {
+        let lead = format!("{REMOVED_BY_ADJUSTMENT}: ");
+        page.led(INDENT, &lead, INDENT * 2, None, &removed.join(", "));
+    }
 }
 
 /// Room for a bar beside the names, the ppm and the share.

@@ -2,7 +2,7 @@
 
 use super::faults;
 use super::grid::{Grid, Side};
-use super::page::{INDENT, Page, counted, plain};
+use super::page::{INDENT, Page, counted, plain, tied};
 use crate::catalog::Severity;
 use crate::report::{CatalogCheck, Ink, Screen};
 
@@ -15,7 +15,17 @@ pub fn check(check: &CatalogCheck, screen: Screen) -> String {
         (0, _) => (format!("{}: ", faults::summary(&check.faults)), Ink::Bold),
         _ => (format!("{}: ", faults::summary(&check.faults)), Ink::Bad),
     };
-    page.led(0, &lead, INDENT, Some(ink), &format!("catalogue {}", plain(&check.folder)));
+    let size = format!(
+        "catalogue {} with {} in {}",
+        plain(&check.folder),
+        tied(&counted(check.records as u64, "record", "records")),
+        tied(&counted(check.files as u64, "file", "files")),
+    );
+    page.led(0, &lead, INDENT, Some(ink), &size);
+    if check.left_out > 0 {
+        let left_out = counted(check.left_out as u64, "record has", "records have");
+        page.wrapped(0, 0, &format!("{left_out} errors and cannot be used"));
+    }
     page.gap();
     let mut grid = Grid::new()
         .column("", Side::Left)

@@ -1,5 +1,7 @@
 //! A family of outputs: all in one table, then each in short.
 
+use std::collections::BTreeSet;
+
 use super::design::{self, LABEL};
 use super::figures::{current, network_ohms, nominal_ohms, room, target, total_beside};
 use super::grid::{Grid, Side};
@@ -48,6 +50,9 @@ fn write_table(page: &mut Page, outputs: &[OutputAnswer]) {
     } else {
         write_stacked(page, grid);
     }
+    let methods: BTreeSet<&str> = outputs.iter().map(|output| output.method).collect();
+    let methods: Vec<&str> = methods.into_iter().collect();
+    page.led(INDENT, "totals: ", INDENT * 2, None, &format!("{}, in ppm", methods.join(", ")));
     let common: Vec<String> = common.iter().map(|(title, text)| labelled(title, text)).collect();
     if !common.is_empty() {
         page.led(INDENT, "every design: ", INDENT * 2, None, &common.join(", "));

@@ -44,8 +44,8 @@ fn write_fault(page: &mut Page, fault: &Fault) {
         Severity::Error => ("error", Ink::Bad),
         Severity::Doubt => ("doubt", Ink::Bold),
     };
-    let lead = format!("{}: {word}", place(fault));
-    let text = format!("{}: {}", subject(fault), plain(&fault.message));
+    let lead = format!("{}: {word}: ", place(fault));
+    let text = format!("{}{}", subject(fault), plain(&fault.message));
     page.led(0, &lead, 4, Some(ink), &text);
     if let Some(hint) = &fault.hint {
         page.led(4, "hint: ", 10, None, &plain(hint));
@@ -62,11 +62,11 @@ fn place(fault: &Fault) -> String {
     }
 }
 
-/// `in RECORD, FIELD`.
+/// `RECORD, FIELD: `.
 fn subject(fault: &Fault) -> String {
     match (&fault.record, &fault.field) {
-        (Some(record), Some(field)) => format!(" in {}, {}", plain(record), plain(field)),
-        (Some(one), None) | (None, Some(one)) => format!(" in {}", plain(one)),
+        (Some(record), Some(field)) => format!("{}, {}: ", plain(record), plain(field)),
+        (Some(one), None) | (None, Some(one)) => format!("{}: ", plain(one)),
         (None, None) => String::new(),
     }
 }

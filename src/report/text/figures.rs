@@ -1,7 +1,7 @@
 //! Figures for people: no more digits than mean something.
 
 use super::page::tied;
-use crate::quantity::{Amperes, Money, Ohms, Ppm, engineering};
+use crate::quantity::{Amperes, Money, Ohms, Ppm, engineering, ppm_text};
 
 /// Digits enough for every value that can be ordered.
 const NOMINAL_DIGITS: usize = 9;
@@ -28,7 +28,7 @@ pub(super) fn worked(figure: f64, unit: &str) -> String {
     match unit {
         "degC" => format!("{} °C", trimmed(figure, 1)),
         "K" => format!("{} K", trimmed(figure, 1)),
-        "ppm" => format!("{} ppm", trimmed(figure, 1)),
+        "ppm" => ppm_text(figure),
         _ => engineering(figure, unit, WORKED_DIGITS),
     }
 }
@@ -81,6 +81,28 @@ pub(super) fn fixed_ppm(ppm: Ppm, decimals: usize) -> String {
 
 fn exponent(decimals: usize) -> i32 {
     i32::try_from(decimals).unwrap_or(0)
+}
+
+/// A figure that has to be reached coming from another one, to five significant digits and
+/// rounded away from there: the figure shown does as well.
+pub(super) fn reaching(from: f64, to: f64) -> String {
+    if to == 0.0 || !to.is_finite() {
+        return trimmed(to, 1);
+    }
+    // The power of ten of the fifth digit; figures of a request lie far inside this range.
+    let fifth = (to.abs().log10().floor() as i32 - 4).clamp(-15, 15);
+    let steps = to / 10f64.powi(fifth);
+    let whole = steps.round();
+    // What is exact but for binary rounding stays as it is.
+    let steps = if (steps - whole).abs() <= 1e-6 {
+        whole
+    } else if to > from {
+        steps.ceil()
+    } else {
+        steps.floor()
+    };
+    let decimals = usize::try_from(-fifth).unwrap_or(0);
+    trimmed(steps * 10f64.powi(fifth), decimals)
 }
 
 /// A total beside its target, with decimals enough that the two don't read the same unless they
@@ -162,6 +184,16 @@ mod tests {
     }
 
     #[test]
+    fn a_figure_to_reach_is_enough_as_shown() {
+        assert_eq!(reaching(20.0, 396.312_224_27), "396.32");
+        assert_eq!(reaching(50.0, 31.508_26), "31.508");
+        assert_eq!(reaching(400.0, 500.0), "500");
+        assert_eq!(reaching(1000.0, 4_135.251), "4135.3");
+        assert_eq!(reaching(5.4, 0.0), "0");
+        assert_eq!(reaching(1e-3, 2.5e-3), "0.0025");
+    }
+
+    #[test]
     fn bars_grow_by_eighths() {
         assert_eq!(bar(0.0, 10), "");
         assert_eq!(bar(1e-9, 10), "▏");
@@ -173,7 +205,7 @@ mod tests {
     #[test]
     fn temperatures_take_no_prefix() {
         assert_eq!(worked(-20.0, "degC"), "-20 °C");
-        assert_eq!(worked(12.5, "ppm"), "12.5 ppm");
+        assert_eq!(worked(8364.94, "ppm"), "8365 ppm");
         assert_eq!(trimmed(-0.01, 1), "0");
     }
 }

@@ -1,6 +1,6 @@
 //! Why an output, or the whole, has no answer.
 
-use super::figures::{current, target, total_beside, trimmed};
+use super::figures::{current, reaching, target, total_beside, trimmed};
 use super::page::{INDENT, Page, counted, plain, tied};
 use super::{design, words};
 use crate::answers::{Cause, JointReason, OutputAnswer, Reasons, Relaxation, Removed};
@@ -37,9 +37,6 @@ pub(super) fn write(page: &mut Page, output: &OutputAnswer, reasons: &Reasons) {
         let (label, or) = if number == 0 { ("would help", "") } else { ("", "or ") };
         page.field(label, LABEL, &format!("{or}{}", relaxed(change)));
     }
-    if reasons.relaxations.is_empty() {
-        page.field("would help", LABEL, "no change of one figure of the request alone");
-    }
 }
 
 /// `3 references: reference headroom`.
@@ -60,8 +57,13 @@ fn fallen(removed: &Removed) -> String {
 
 fn relaxed(change: &Relaxation) -> String {
     let unit = unit_of(&change.figure);
-    let figure = |figure: f64| tied(format!("{} {unit}", trimmed(figure, 9)).trim_end());
-    format!("{} {} instead of {}", plain(&change.figure), figure(change.to), figure(change.from))
+    let with_unit = |figure: String| tied(format!("{figure} {unit}").trim_end());
+    format!(
+        "{} {} instead of {}",
+        plain(&change.figure),
+        with_unit(reaching(change.from, change.to)),
+        with_unit(trimmed(change.from, 9))
+    )
 }
 
 /// The SI unit of a figure of the request, by the last name in its path. A load can be in volts

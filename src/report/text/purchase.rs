@@ -58,7 +58,7 @@ fn write_sum(page: &mut Page, choice: &Choice, bill: &Bill) {
     let lines = counted(bill.lines.len() as u64, "order line", "order lines");
     let entries: [(String, Money); 4] = [
         ("parts".to_owned(), bill.parts_cost),
-        (format!("having {lines}"), bill.lines_cost),
+        (format!("for {lines}"), bill.lines_cost),
         ("placement".to_owned(), bill.placement_cost),
         ("adjustment".to_owned(), bill.adjustment_cost),
     ];
