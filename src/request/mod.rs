@@ -7,6 +7,8 @@ mod model;
 mod outputs;
 mod read;
 mod reader;
+#[cfg(test)]
+mod tests;
 
 pub use flags::{DEFAULT_NAME, DEFAULT_QUANTITY, FlagDef, from_flags, request_flags};
 pub use model::{

@@ -6,7 +6,7 @@ use std::path::PathBuf;
 use std::sync::Arc;
 
 use crate::catalog::yaml::{Node, NodeValue, Spot};
-use crate::catalog::{Fault, Place, Severity};
+use crate::catalog::{Fault, Place, Severity, nearest_name};
 use crate::quantity::{
     Decimal, FigureError, Money, Parse, Quantity, Range, Sign, parse_count, parse_number, shown,
 };
@@ -144,13 +144,10 @@ impl Reader {
                 format!("{} stands at the top of the request", shown(name))
             }
             Some(field) => format!("{} belongs under {}", shown(name), shown(field.group())),
-            None => {
-                let known: Vec<&str> = fields_of(list_path).map(FieldDef::name).collect();
-                nearest(name, &known).map_or_else(
-                    || "leave it out".to_owned(),
-                    |near| format!("the nearest known field is {}", shown(near)),
-                )
-            }
+            None => nearest_name(name, fields_of(list_path).map(FieldDef::name)).map_or_else(
+                || "leave it out".to_owned(),
+                |near| format!("the nearest known field is {}", shown(near)),
+            ),
         };
         self.error(at, path, format!("unknown field {}", shown(name)), hint);
     }
@@ -337,7 +334,7 @@ impl Reader {
         let found = words.iter().find(|word| **word == text).copied();
         if found.is_none() {
             let known = words.iter().map(|word| shown(word)).collect::<Vec<_>>().join(", ");
-            let near = nearest(text, words).unwrap_or_default();
+            let near = nearest_name(text, words.iter().copied()).unwrap_or_default();
             let hint = if words.len() == 1 {
                 format!("write {known}")
             } else {
@@ -429,14 +426,4 @@ pub(super) fn described(node: &Node) -> String {
         NodeValue::Sequence(items) => format!("a list of {}", items.len()),
         NodeValue::Mapping(_) => "a mapping".to_owned(),
     }
-}
-
-/// The known word with the fewest edits.
-fn nearest<'k>(word: &str, known: &[&'k str]) -> Option<&'k str> {
-    // A long text is no misspelling, and comparing it would cost its length each time.
-    if word.len() > 80 {
-        return None;
-    }
-    let lower = word.to_lowercase();
-    known.iter().min_by_key(|name| strsim::osa_distance(&lower, name)).copied()
 }
