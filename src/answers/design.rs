@@ -10,8 +10,9 @@ use super::choice::{ChosenDesign, ChosenElement};
 pub(super) fn design_of<'a>(space: &OutputSpace<'a>, pick: &Pick) -> Design<'a> {
     let market = space.market;
     let frame = &space.frames[pick.frame as usize];
-    let mut elements: Vec<Element<'a>> = space
-        .elements(pick)
+    let mut elements: Vec<Element<'a>> = pick
+        .network
+        .offers()
         .iter()
         .map(|&offer| {
             let (value, of) = market.resistor(offer);
@@ -26,7 +27,7 @@ pub(super) fn design_of<'a>(space: &OutputSpace<'a>, pick: &Pick) -> Design<'a> 
     Design {
         reference: market.references[pick.reference as usize],
         amplifier: market.amplifiers[pick.amplifier as usize],
-        network: Network { connection: space.combo(pick).connection, elements },
+        network: Network { connection: pick.network.connection, elements },
         lift: frame.lift.map(|(lift, count)| LiftStack { of: market.lifts[lift as usize], count }),
         adjustment: frame.adjustment.map(|a| market.adjustments[a as usize].0),
     }

@@ -71,7 +71,7 @@ pub fn bill(family: &Family<'_, '_>, picks: &[Pick]) -> Option<Bill> {
         let (space, quantity) = (family.spaces[output], family.quantities[output]);
         let frame = &space.frames[pick.frame as usize];
         let diodes = frame.lift.map_or(0, |(_, count)| u64::from(count));
-        let components = 2 + space.elements(pick).len() as u64 + diodes;
+        let components = 2 + pick.network.offers().len() as u64 + diodes;
         placement_cost = placement_cost + purchase.placement_cost * (components * quantity);
         if let Some(step) = frame.adjustment {
             let each = Money::from_micros(i128::from(market.adjustments[step as usize].1));

@@ -66,11 +66,9 @@ impl<'s, 'a> Designs<'s, 'a> {
                         note(market.amplifier_offer(a.index), 1);
                     }
                 }
-                for combo in space.nets.iter().flat_map(|net| &net.combos) {
-                    for run in combo.slots().chunk_by(|a, b| a.value == b.value) {
-                        for stocked in market.stocked(run[0].value) {
-                            note(stocked.offer, run.len() as u32);
-                        }
+                for (value, count) in space.usable_values() {
+                    for stocked in market.stocked(value) {
+                        note(stocked.offer, count);
                     }
                 }
             }
@@ -80,7 +78,7 @@ impl<'s, 'a> Designs<'s, 'a> {
                         note(market.reference_offer(pair.reference), 1);
                         note(market.amplifier_offer(pair.amplifier), 1);
                     }
-                    for (offer, count) in listed.networks.iter().flat_map(|n| n.uses()) {
+                    for (offer, count) in listed.networks.iter().flat_map(|n| n.network.uses()) {
                         note(offer, count);
                     }
                 }

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use crate::search::{Amount, Costs, Market, OfferId, OutputSpace, Pick, runs};
+use crate::search::{Amount, Costs, Market, OfferId, OutputSpace, Pick};
 
 use super::price::{Buy, cheapest_buy};
 
@@ -126,7 +126,7 @@ impl<'s, 'a> Family<'s, 'a> {
         let space = self.spaces[output];
         let frame = &space.frames[pick.frame as usize];
         let components =
-            2 + space.elements(pick).len() as i64 + frame.lift.map_or(0, |(_, n)| i64::from(n));
+            2 + pick.network.offers().len() as i64 + frame.lift.map_or(0, |(_, n)| i64::from(n));
         let step = frame.adjustment.map_or(0, |a| self.adjustment_costs(output)[a as usize]);
         components * self.component_cost(output) + step
     }
@@ -176,7 +176,7 @@ pub fn uses(space: &OutputSpace<'_>, pick: &Pick) -> Vec<(OfferId, u32)> {
         (market.reference_offer(pick.reference), 1),
         (market.amplifier_offer(pick.amplifier), 1),
     ];
-    all.extend(runs(space.elements(pick)));
+    all.extend(pick.network.uses());
     if let Some((lift, count)) = space.frames[pick.frame as usize].lift {
         all.push((market.lift_offer(lift), count));
     }

@@ -102,8 +102,7 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
                         frame: listed.frame,
                         reference: pair.reference,
                         amplifier: pair.amplifier,
-                        combo: network.combo,
-                        offers: network.offers,
+                        network: network.network,
                     })
                 })
             })
@@ -158,14 +157,14 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
             let mut networks = Vec::with_capacity(listed.networks.len());
             for network in &listed.networks {
                 let column = self.variables.add(variable().binary());
-                let uses: Vec<_> = network.uses().collect();
-                let cost =
-                    component * i64::from(network.count) + self.own_cost(output, column, &uses);
+                let uses: Vec<_> = network.network.uses().collect();
+                let cost = component * network.network.offers().len() as i64
+                    + self.own_cost(output, column, &uses);
                 all_networks.push((column, cost));
                 networks.push(column);
             }
             self.chain(listed, &pairs, &networks, |p| p.error, |n| n.room);
-            if frame.tight {
+            if binds(listed) {
                 self.chain(listed, &pairs, &networks, |p| p.statics, |n| n.statics_room);
             }
             frames.push(FrameColumns { pairs, networks });
@@ -306,6 +305,12 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
     }
 }
 
+/// Whether some listed pair and network of a frame have more static error than the range.
+fn binds(listed: &ListedFrame) -> bool {
+    let most = listed.pairs.iter().map(|p| p.statics).fold(0.0, f64::max);
+    listed.networks.iter().any(|n| n.statics_room < most)
+}
+
 /// The parts that several outputs can use; with [`Aim::Shortage`] every part of limited stock.
 fn shared_parts(
     family: &Family<'_, '_>,
@@ -326,7 +331,7 @@ fn shared_parts(
                 note(market.reference_offer(pair.reference));
                 note(market.amplifier_offer(pair.amplifier));
             }
-            for (offer, _) in listed.networks.iter().flat_map(|n| n.uses()) {
+            for (offer, _) in listed.networks.iter().flat_map(|n| n.network.uses()) {
                 note(offer);
             }
             if let Some((lift, _)) = listing.space.frames[listed.frame as usize].lift {

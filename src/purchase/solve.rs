@@ -49,14 +49,15 @@ pub fn solve<'s, 'a>(family: &Family<'s, 'a>, watch: &dyn Watch) -> Outcome {
     let designs: Vec<Designs<'s, 'a>> =
         family.spaces.iter().map(|space| Designs::All(space)).collect();
     let mut search = Search { family, watch, unit: granularity(family), extra_line: 0 };
+    if let [only] = designs.as_slice()
+        && let Some(best) = search.alone(only)
+    {
+        // One output alone: the oracle has priced every design with its exact cost.
+        return Outcome::Found { bound: best.total, best };
+    }
     let Some(first) = search.first_set(&designs) else {
         return if watch.stop() { Outcome::Open } else { search.why_none(designs) };
     };
-    if family.spaces.len() == 1 && search.extra_line == 0 {
-        // One output alone: the oracle has priced every design with its exact cost.
-        let bound = first.total;
-        return Outcome::Found { best: first, bound };
-    }
     search.prove(first, designs)
 }
 
@@ -70,6 +71,14 @@ struct Search<'f, 's, 'a> {
 }
 
 impl<'s, 'a> Search<'_, 's, 'a> {
+    /// The cheapest design of a lone output, if it keeps `lines_max`.
+    fn alone(&self, designs: &Designs<'s, 'a>) -> Option<Incumbent> {
+        let costs = self.family.marginal_costs(0, &Demand::new());
+        let (total, pick) = designs.cheapest(&costs, i64::HUGE)?;
+        let picks = vec![pick];
+        (self.family.total(&picks) == Some(total)).then_some(Incumbent { total, picks })
+    }
+
     /// Good sets from a few starts; where the lines are too many, with a rising price on lines.
     fn first_set(&mut self, designs: &[Designs<'s, 'a>]) -> Option<Incumbent> {
         self.watch.note("first set", None, None);

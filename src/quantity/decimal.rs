@@ -44,7 +44,13 @@ impl Decimal {
     /// The nearest binary number, rounded once.
     #[must_use]
     pub fn to_f64(self) -> f64 {
-        // The standard library's decimal reader rounds correctly; arithmetic here would round twice.
+        // Both operands are exact up to here, so one operation rounds once.
+        if self.mantissa.unsigned_abs() < 1 << 53 && self.exponent.unsigned_abs() <= 22 {
+            let power = 10f64.powi(self.exponent.abs());
+            let mantissa = self.mantissa as f64;
+            return if self.exponent < 0 { mantissa / power } else { mantissa * power };
+        }
+        // The standard library's decimal reader rounds correctly.
         format!("{}e{}", self.mantissa, self.exponent).parse().unwrap_or(f64::NAN)
     }
 

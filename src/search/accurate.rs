@@ -7,7 +7,7 @@ use super::combos::Combo;
 use super::costs::Costs;
 use super::errors::network_errors;
 use super::networks::{NetChoice, NetVisitor, Walk};
-use super::oracle::{Pair, Pick};
+use super::oracle::{Pair, Pick, PickedNetwork};
 use super::space::{FrameSpace, NetSpace, OutputSpace, PartIn};
 
 impl OutputSpace<'_> {
@@ -22,10 +22,14 @@ impl OutputSpace<'_> {
             vec![0; market.adjustments.len()],
         );
         let mut best = None;
-        for net in &self.nets {
-            let mut search = MostAccurate::new(self, net, best);
-            self.walk(net, &free, Walk::Fronts, &mut search);
-            best = search.best;
+        let least = self.least_costs(&free);
+        for count in 1..=market.request.network_elements {
+            for net in &self.nets {
+                let mut search = MostAccurate::new(self, net, best);
+                let least = &least[usize::from(net.adjusted)];
+                self.walk(net, count, &free, least, Walk::Fronts, &mut search);
+                best = search.best;
+            }
         }
         best
     }
@@ -35,11 +39,11 @@ impl OutputSpace<'_> {
     pub fn total_of(&self, pick: &Pick) -> f64 {
         let frame = &self.frames[pick.frame as usize];
         let net = &self.nets[frame.net];
-        let combo = self.combo(pick);
-        let types: Vec<u32> =
-            self.elements(pick).iter().map(|&offer| self.market.resistor(offer).1).collect();
+        let offers = pick.network.offers();
+        let combo = self.combo_of(net, pick.network.connection, offers);
+        let types: Vec<u32> = offers.iter().map(|&offer| self.market.resistor(offer).1).collect();
         let errors = &self.errors[usize::from(net.adjusted)];
-        let (network, _) = network_errors(errors, self.method, combo, &types);
+        let (network, _) = network_errors(errors, self.method, &combo, &types);
         let error = |parts: &[PartIn], index: u32| {
             parts.iter().find(|p| p.index == index).map_or(f64::NAN, |p| p.error)
         };
@@ -107,9 +111,13 @@ impl<'s, 'a> MostAccurate<'s, 'a> {
 }
 
 impl NetVisitor<i64> for MostAccurate<'_, '_> {
-    fn ceiling(&self, combo: &Combo) -> Option<i64> {
-        let hopeless = !self.adjusted && self.best.is_some_and(|(b, _)| combo.mismatch >= b);
-        (!hopeless).then_some(0)
+    fn ceiling(&self, _count: u32) -> Option<i64> {
+        Some(0)
+    }
+
+    fn wants(&self, combo: &Combo) -> bool {
+        // Without an adjustment the mismatch alone is part of the total.
+        self.adjusted || self.best.is_none_or(|(best, _)| combo.mismatch < best)
     }
 
     fn take(&mut self, combo: &Combo, choice: &NetChoice<i64>) {
@@ -123,8 +131,7 @@ impl NetVisitor<i64> for MostAccurate<'_, '_> {
                     frame: *index,
                     reference: pair.reference,
                     amplifier: pair.amplifier,
-                    combo: choice.combo,
-                    offers: choice.offers,
+                    network: PickedNetwork::new(combo, choice.offers),
                 };
                 self.best = Some((total, pick));
             }

@@ -7,6 +7,7 @@ use std::collections::HashSet;
 use num_bigint::BigInt;
 use num_rational::BigRational;
 use num_traits::{One, Signed, ToPrimitive, Zero};
+use rayon::prelude::*;
 
 use crate::catalog::{ResistorType, Values};
 use crate::quantity::{Decimal, Exact, Range, Volts};
@@ -39,24 +40,25 @@ pub(super) fn made_to_order(
     currents.sort_unstable();
     currents.dedup();
 
-    let mut found = HashSet::new();
-    for voltage in voltages {
-        for current in &currents {
+    let pairs: Vec<(Exact<Volts>, Decimal)> =
+        voltages.iter().flat_map(|&v| currents.iter().map(move |&c| (v, c))).collect();
+    let found: HashSet<(u32, Decimal)> = pairs
+        .par_iter()
+        .flat_map_iter(|&(voltage, current)| {
             let target = Target {
                 exact: voltage.decimal().to_rational() / current.to_rational(),
                 near: voltage.value().value() / current.to_f64(),
             };
+            let mut found = Vec::new();
             for rest in &rests {
                 for &(index, range, digits) in &open {
-                    for ohms in target.around(rest, digits).into_iter().flatten() {
-                        if holds(range, ohms) {
-                            found.insert((index, ohms));
-                        }
-                    }
+                    let around = target.around(rest, digits).into_iter().flatten();
+                    found.extend(around.filter(|&o| holds(range, o)).map(|o| (index, o)));
                 }
             }
-        }
-    }
+            found
+        })
+        .collect();
     found.into_iter().collect()
 }
 

@@ -3,9 +3,8 @@
 
 use super::combos::Combo;
 use super::costs::{Amount, Costs};
-use super::market::OfferId;
 use super::networks::{NetChoice, NetVisitor, Walk};
-use super::oracle::{Pair, PairFront, Pick, front_of};
+use super::oracle::{Pair, PairFront, Pick, PickedNetwork};
 use super::space::{NetSpace, OutputSpace};
 
 /// A reference and an amplifier.
@@ -24,28 +23,12 @@ pub struct ListedPair {
 /// A network within a frame.
 #[derive(Clone, Copy, Debug)]
 pub struct ListedNetwork {
-    /// Its combination.
-    pub combo: u32,
-    /// How many elements.
-    pub count: u8,
-    /// Offers of its slots.
-    pub offers: [OfferId; 3],
+    /// Its connection and offers.
+    pub network: PickedNetwork,
     /// The largest error of a pair beside it.
     pub room: f64,
     /// The largest static error of a pair beside it.
     pub statics_room: f64,
-}
-
-impl ListedNetwork {
-    /// Distinct offers with their counts.
-    pub fn uses(&self) -> impl Iterator<Item = (OfferId, u32)> + '_ {
-        runs(&self.offers[..self.count as usize])
-    }
-}
-
-/// Distinct offers of a network with their counts; equal offers stand side by side.
-pub fn runs(offers: &[OfferId]) -> impl Iterator<Item = (OfferId, u32)> + '_ {
-    offers.chunk_by(|a, b| a == b).map(|run| (run[0], run.len() as u32))
 }
 
 /// The lists of one frame.
@@ -80,9 +63,13 @@ impl<'a> OutputSpace<'a> {
     ) -> Option<Listing<'_, 'a>> {
         let mut frames: Vec<ListedFrame> = Vec::new();
         let mut rows = 0;
+        let least = self.least_costs(costs);
         for net in &self.nets {
             let mut collector = Collector::new(self, net, costs, ceiling, most_rows - rows);
-            self.walk(net, costs, Walk::All, &mut collector);
+            for count in 1..=self.market.request.network_elements {
+                let least = &least[usize::from(net.adjusted)];
+                self.walk(net, count, costs, least, Walk::All, &mut collector);
+            }
             if collector.too_many {
                 return None;
             }
@@ -145,9 +132,8 @@ fn smaller<C: Amount>(a: C, b: C) -> C {
 }
 
 fn network_cost<C: Amount>(costs: &Costs<C>, network: &ListedNetwork) -> C {
-    network
-        .uses()
-        .fold(costs.component.times(u32::from(network.count)), |sum, (o, n)| sum + costs.of(o, n))
+    let components = costs.component.times(network.network.offers().len() as u32);
+    network.network.uses().fold(components, |sum, (offer, count)| sum + costs.of(offer, count))
 }
 
 struct CollectedFrame<C> {
@@ -201,12 +187,12 @@ impl<'s, 'a, C: Amount> Collector<'s, 'a, C> {
 }
 
 impl<C: Amount> NetVisitor<C> for Collector<'_, '_, C> {
-    fn ceiling(&self, combo: &Combo) -> Option<C> {
+    fn ceiling(&self, count: u32) -> Option<C> {
         if self.too_many {
             return None;
         }
         let least = self.frames.iter().map(|f| f.least).reduce(smaller)?;
-        let least = least + self.component.times(u32::from(combo.count));
+        let least = least + self.component.times(count);
         (least <= self.ceiling).then(|| self.ceiling - least)
     }
 
@@ -230,13 +216,8 @@ impl<C: Amount> NetVisitor<C> for Collector<'_, '_, C> {
                     return;
                 }
                 self.left -= 1;
-                list.push(ListedNetwork {
-                    combo: choice.combo,
-                    count: combo.count,
-                    offers: choice.offers,
-                    room,
-                    statics_room,
-                });
+                let network = PickedNetwork::new(combo, choice.offers);
+                list.push(ListedNetwork { network, room, statics_room });
             }
         }
     }
@@ -269,8 +250,8 @@ impl Listing<'_, '_> {
         }
     }
 
-    fn is_tight(&self, listed: &ListedFrame) -> bool {
-        self.space.frames[listed.frame as usize].tight
+    fn is_adjusted(&self, listed: &ListedFrame) -> bool {
+        self.space.frames[listed.frame as usize].adjustment.is_some()
     }
 
     fn front<C: Amount>(&self, listed: &ListedFrame, priced: &Priced<C>) -> PairFront<C> {
@@ -287,7 +268,7 @@ impl Listing<'_, '_> {
                 amplifier: p.amplifier,
             })
             .collect();
-        front_of(pairs, self.is_tight(listed))
+        PairFront::of(pairs, self.is_adjusted(listed))
     }
 
     /// The cheapest listed design, when it costs less than `below`.
@@ -312,8 +293,7 @@ impl Listing<'_, '_> {
                             frame: listed.frame,
                             reference: pair.reference,
                             amplifier: pair.amplifier,
-                            combo: network.combo,
-                            offers: network.offers,
+                            network: network.network,
                         };
                         best = Some((whole, pick));
                     }
@@ -344,7 +324,7 @@ impl Listing<'_, '_> {
                     })
                     .map(|(n, &cost)| (*n, cost))
                     .collect();
-                let beside = NetworkFront::new(&networks, self.is_tight(listed));
+                let beside = NetworkFront::new(&networks, self.is_adjusted(listed));
                 let pairs: Vec<ListedPair> = listed
                     .pairs
                     .iter()
@@ -365,43 +345,44 @@ impl Listing<'_, '_> {
 }
 
 /// The cheapest network beside a pair.
-enum NetworkFront<C> {
+struct NetworkFront<C> {
     /// Room falling, the least cost so far.
-    Staircase(Vec<(f64, C)>),
-    /// Cost rising, with both rooms.
-    ByCost(Vec<(f64, f64, C)>),
+    staircase: Vec<(f64, C)>,
+    /// Cost rising, with both rooms; for pairs whose static error has to be looked at.
+    by_cost: Vec<(f64, f64, C)>,
+    /// Every network has room for this static error.
+    least_room: f64,
 }
 
 impl<C: Amount> NetworkFront<C> {
-    fn new(networks: &[(ListedNetwork, C)], tight: bool) -> Self {
+    fn new(networks: &[(ListedNetwork, C)], adjusted: bool) -> Self {
         let order = |a: &C, b: &C| a.partial_cmp(b).unwrap_or(std::cmp::Ordering::Equal);
-        if tight {
-            let mut all: Vec<_> =
-                networks.iter().map(|(n, c)| (n.room, n.statics_room, *c)).collect();
-            all.sort_by(|a, b| order(&a.2, &b.2));
-            return Self::ByCost(all);
-        }
-        let mut all: Vec<_> = networks.iter().map(|(n, c)| (n.room, *c)).collect();
-        all.sort_by(|a, b| b.0.total_cmp(&a.0).then(order(&a.1, &b.1)));
+        let mut by_cost: Vec<_> = if adjusted {
+            networks.iter().map(|(n, c)| (n.room, n.statics_room, *c)).collect()
+        } else {
+            Vec::new()
+        };
+        by_cost.sort_by(|a, b| order(&a.2, &b.2));
+        let mut staircase: Vec<_> = networks.iter().map(|(n, c)| (n.room, *c)).collect();
+        staircase.sort_by(|a, b| b.0.total_cmp(&a.0).then(order(&a.1, &b.1)));
         let mut least: Option<C> = None;
-        for entry in &mut all {
+        for entry in &mut staircase {
             let so_far = least.map_or(entry.1, |l| smaller(l, entry.1));
             least = Some(so_far);
             entry.1 = so_far;
         }
-        Self::Staircase(all)
+        let least_room = networks.iter().map(|(n, _)| n.statics_room).fold(f64::INFINITY, f64::min);
+        Self { staircase, by_cost, least_room }
     }
 
     fn beside(&self, error: f64, statics: f64) -> Option<C> {
-        match self {
-            Self::Staircase(all) => {
-                let fitting = all.partition_point(|&(room, _)| room >= error);
-                fitting.checked_sub(1).map(|last| all[last].1)
-            }
-            Self::ByCost(all) => all
-                .iter()
-                .find(|&&(room, statics_room, _)| room >= error && statics_room >= statics)
-                .map(|&(_, _, cost)| cost),
+        if statics <= self.least_room {
+            let fitting = self.staircase.partition_point(|&(room, _)| room >= error);
+            return fitting.checked_sub(1).map(|last| self.staircase[last].1);
         }
+        self.by_cost
+            .iter()
+            .find(|&&(room, statics_room, _)| room >= error && statics_room >= statics)
+            .map(|&(_, _, cost)| cost)
     }
 }

@@ -15,9 +15,10 @@ mod rules;
 mod space;
 mod ties;
 
-pub use combos::{Combo, Slot};
+pub use combos::{Combo, Goal, Slot};
 pub use costs::{Amount, Costs};
-pub use listing::{ListedFrame, ListedNetwork, ListedPair, Listing, runs};
+pub use listing::{ListedFrame, ListedNetwork, ListedPair, Listing};
 pub use market::{Market, MarketError, OfferId, RuleRemovals, Stocked, SupplyName, Tariff};
-pub use oracle::Pick;
+pub use networks::ValueTable;
+pub use oracle::{Pick, PickedNetwork};
 pub use space::{Common, FrameSpace, NetSpace, OutputSpace, PartIn};

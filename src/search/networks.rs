@@ -1,22 +1,26 @@
-//! Walks over the networks of an output: which types fill the slots of each combination.
+//! Walks over the networks of an output: which values, joined how, with which types.
+//!
+//! Combinations of values are not listed beforehand: with made-to-order values there are too many.
+//! They are found as they are walked over, and whole branches are left out where their least cost
+//! is of no interest.
+
+use crate::circuit::Connection;
+use crate::request::Budget;
 
 use super::combos::{Combo, Slot};
 use super::costs::{Amount, Costs};
 use super::errors::{TypeErrors, network_errors};
 use super::market::OfferId;
 use super::space::{NetSpace, OutputSpace};
-use crate::request::Budget;
 
 /// One network: a combination with a type in each slot.
 #[derive(Clone, Copy, Debug)]
 pub struct NetChoice<C> {
-    /// Index of its combination.
-    pub combo: u32,
     /// Offers of its slots; only the first `count` of the combination mean anything.
     pub offers: [OfferId; 3],
     /// Budget share of the elements (mismatch apart).
     pub error: f64,
-    /// Static sum with the mismatch, ppm; meaningful with an adjustment.
+    /// Static sum with the mismatch, ppm; 0 without an adjustment.
     pub statics: f64,
     /// Cost of the elements.
     pub cost: C,
@@ -24,9 +28,12 @@ pub struct NetChoice<C> {
 
 /// Something that looks at networks.
 pub trait NetVisitor<C> {
-    /// The largest cost of the elements that is of interest for this combination now;
-    /// `None` when the combination is of no interest at any cost.
-    fn ceiling(&self, combo: &Combo) -> Option<C>;
+    /// The largest cost of so many elements that is of interest now; `None` when no network is.
+    fn ceiling(&self, count: u32) -> Option<C>;
+    /// Whether a combination is of interest at all.
+    fn wants(&self, _combo: &Combo) -> bool {
+        true
+    }
     /// Looks at one network.
     fn take(&mut self, combo: &Combo, choice: &NetChoice<C>);
 }
@@ -38,6 +45,63 @@ pub enum Walk {
     Fronts,
     /// All of them.
     All,
+}
+
+/// The values that networks are made of.
+#[derive(Debug)]
+pub struct ValueTable {
+    /// All values in ohms, ascending.
+    pub ohms: Vec<f64>,
+    /// Indices of values that some listed type has.
+    pub listed: Vec<u32>,
+    /// Indices of values that only made-to-order types have.
+    pub made_only: Vec<u32>,
+}
+
+impl ValueTable {
+    fn between<'t>(&self, among: &'t [u32], (low, high): (f64, f64)) -> (usize, &'t [u32]) {
+        let start = among.partition_point(|&v| self.ohms[v as usize] < low);
+        let end = among.partition_point(|&v| self.ohms[v as usize] <= high);
+        (start, &among[start..end.max(start)])
+    }
+}
+
+/// Least costs of one element by value.
+#[derive(Debug)]
+pub struct LeastCosts<C> {
+    by_value: Vec<C>,
+    listed: C,
+    made_only: C,
+}
+
+impl<C: Amount> LeastCosts<C> {
+    /// Looks them up for an output, with or without adjustment.
+    #[must_use]
+    pub fn new(space: &OutputSpace<'_>, adjusted: bool, costs: &Costs<C>) -> Self {
+        let errors = &space.errors[usize::from(adjusted)];
+        let market = space.market;
+        let by_value: Vec<C> = (0..market.values.len() as u32)
+            .map(|value| {
+                market
+                    .stocked(value)
+                    .iter()
+                    .filter(|s| errors[s.of as usize].usable)
+                    .map(|s| costs.of(s.offer, 1))
+                    .fold(C::HUGE, smaller)
+            })
+            .collect();
+        let least =
+            |among: &[u32]| among.iter().map(|&v| by_value[v as usize]).fold(C::HUGE, smaller);
+        Self {
+            listed: least(&space.values.listed),
+            made_only: least(&space.values.made_only),
+            by_value,
+        }
+    }
+}
+
+fn smaller<C: Amount>(a: C, b: C) -> C {
+    if b < a { b } else { a }
 }
 
 /// One type in one slot.
@@ -52,85 +116,219 @@ struct Entry<C> {
 }
 
 impl OutputSpace<'_> {
-    /// Shows a visitor the networks of one reference voltage.
+    /// Values that some network can hold, with the most of it in one network; none that can is
+    /// missing, though one that cannot may be there.
+    #[must_use]
+    pub fn usable_values(&self) -> Vec<(u32, u32)> {
+        let elements = self.market.request.network_elements;
+        let ohms = &self.values.ohms;
+        let any_in = |(low, high): (f64, f64)| {
+            let from = ohms.partition_point(|&r| r < low);
+            ohms.get(from).is_some_and(|&r| r <= high)
+        };
+        let most = |value: u32| -> u32 {
+            let r = ohms[value as usize];
+            let mut most = 0;
+            for goal in self.nets.iter().map(|n| n.goal).filter(|g| g.most_ppm >= 0.0) {
+                let holds = |connection, times: u32| {
+                    goal.range(connection, 0.0, times).is_some_and(|(l, h)| l <= r && r <= h)
+                };
+                if holds(Connection::Single, 1) {
+                    most = most.max(1);
+                }
+                for connection in [Connection::Series, Connection::Parallel] {
+                    let taken = if connection == Connection::Parallel { 1.0 / r } else { r };
+                    if elements >= 2 && goal.range(connection, taken, 1).is_some_and(any_in) {
+                        most = most.max(1);
+                    }
+                    if elements >= 2 && holds(connection, 2) {
+                        most = most.max(2);
+                    }
+                    // Three elements reach nearly everything on the right side of R*.
+                    if elements >= 3 && goal.range(connection, taken, 2).is_some() {
+                        most = 3;
+                    }
+                }
+            }
+            most
+        };
+        (0..ohms.len() as u32).map(|v| (v, most(v))).filter(|&(_, most)| most > 0).collect()
+    }
+
+    /// Shows a visitor the networks of so many elements at one reference voltage.
     pub fn walk<C: Amount>(
         &self,
         net: &NetSpace,
+        count: u32,
         costs: &Costs<C>,
+        least: &LeastCosts<C>,
         walk: Walk,
         visitor: &mut impl NetVisitor<C>,
     ) {
-        let tight = net.frames.iter().any(|&f| self.frames[f].tight);
-        let mut walker = Walker {
-            space: self,
-            errors: &self.errors[usize::from(net.adjusted)],
-            costs,
-            walk,
-            tight,
-            least: vec![None; self.market.values.len()],
-            lists: [Vec::new(), Vec::new(), Vec::new()],
-        };
-        for (index, combo) in net.combos.iter().enumerate() {
-            walker.combination(net, index as u32, combo, visitor);
+        if net.goal.most_ppm < 0.0 {
+            return;
         }
+        let connections: &[Connection] = if count == 1 {
+            &[Connection::Single]
+        } else {
+            &[Connection::Series, Connection::Parallel]
+        };
+        for &connection in connections {
+            let mut walker = Walker {
+                space: self,
+                net,
+                connection,
+                count,
+                errors: &self.errors[usize::from(net.adjusted)],
+                costs,
+                least,
+                walk,
+                lists: [Vec::new(), Vec::new(), Vec::new()],
+            };
+            // Any listed values; or one made-to-order value (repeated if need be) with listed
+            // ones, since a network holds one such value.
+            for times in 0..=count {
+                walker.extend(Prefix::new(), count - times, times, 0, visitor);
+            }
+        }
+    }
+}
+
+/// The listed values chosen so far, ascending.
+#[derive(Clone, Copy)]
+struct Prefix<C> {
+    values: [u32; 3],
+    count: usize,
+    cost: C,
+    /// Sum of resistances, or of conductances in parallel.
+    taken: f64,
+}
+
+impl<C: Amount> Prefix<C> {
+    const fn new() -> Self {
+        Self { values: [u32::MAX; 3], count: 0, cost: C::ZERO, taken: 0.0 }
     }
 }
 
 struct Walker<'s, 'a, C> {
     space: &'s OutputSpace<'a>,
+    net: &'s NetSpace,
+    connection: Connection,
+    count: u32,
     errors: &'s [TypeErrors],
     costs: &'s Costs<C>,
+    least: &'s LeastCosts<C>,
     walk: Walk,
-    tight: bool,
-    /// Least cost of one element by value, once looked up.
-    least: Vec<Option<C>>,
     lists: [Vec<Entry<C>>; 3],
 }
 
 impl<C: Amount> Walker<'_, '_, C> {
-    fn combination(
+    /// Extends a prefix by `listed` more listed values and then a made-to-order value `times` over.
+    fn extend(
         &mut self,
-        net: &NetSpace,
-        index: u32,
-        combo: &Combo,
+        prefix: Prefix<C>,
+        listed: u32,
+        times: u32,
+        from: usize,
         visitor: &mut impl NetVisitor<C>,
     ) {
-        let Some(ceiling) = visitor.ceiling(combo) else { return };
-        let slots = combo.slots();
+        let Some(ceiling) = visitor.ceiling(self.count) else { return };
+        if prefix.cost > ceiling {
+            return;
+        }
+        let values = &self.space.values;
+        if times > 0 {
+            if prefix.cost + self.least.made_only > ceiling {
+                return;
+            }
+            if listed == 0 {
+                let Some(range) = self.net.goal.range(self.connection, prefix.taken, times) else {
+                    return;
+                };
+                for &made in values.between(&values.made_only, range).1 {
+                    self.complete(&prefix, made, times, visitor);
+                }
+                return;
+            }
+        } else if listed == 1 {
+            let Some(range) = self.net.goal.range(self.connection, prefix.taken, 1) else { return };
+            // Where a further value costs too much, the last one repeated can still do.
+            let room = prefix.cost + self.least.listed <= ceiling;
+            let among = if room { values.listed.len() } else { values.listed.len().min(from + 1) };
+            if !room && prefix.count == 0 {
+                return;
+            }
+            let (start, found) = values.between(&values.listed[..among], range);
+            for &last in &found[from.saturating_sub(start).min(found.len())..] {
+                self.complete(&prefix, last, 1, visitor);
+            }
+            return;
+        }
+        let besides = if times > 0 { self.least.made_only } else { C::ZERO };
+        let series_most = match self.connection {
+            Connection::Parallel => f64::INFINITY,
+            Connection::Single | Connection::Series => self.net.goal.most_ohms(),
+        };
+        for index in from..values.listed.len() {
+            let value = values.listed[index];
+            let ohms = values.ohms[value as usize];
+            if prefix.taken + ohms > series_most {
+                break;
+            }
+            let mut longer = prefix;
+            let repeats = prefix.count > 0 && prefix.values[prefix.count - 1] == value;
+            if !repeats {
+                longer.cost = longer.cost + self.least.by_value[value as usize];
+            }
+            longer.taken += if self.connection == Connection::Parallel { 1.0 / ohms } else { ohms };
+            longer.values[longer.count] = value;
+            longer.count += 1;
+            if longer.cost + besides <= ceiling {
+                self.extend(longer, listed - 1, times, index, visitor);
+            }
+        }
+    }
+
+    /// One whole combination: a prefix and one more value, `times` over.
+    fn complete(
+        &mut self,
+        prefix: &Prefix<C>,
+        last: u32,
+        times: u32,
+        visitor: &mut impl NetVisitor<C>,
+    ) {
+        let Some(ceiling) = visitor.ceiling(self.count) else { return };
+        let mut values = prefix.values;
+        values[prefix.count..self.count as usize].fill(last);
+        let values = &mut values[..self.count as usize];
+        debug_assert_eq!(prefix.count + times as usize, values.len());
+        values.sort_unstable();
         let mut least = [C::ZERO; 3];
         let mut sum = C::ZERO;
-        for (position, slot) in slots.iter().enumerate() {
+        for (position, &value) in values.iter().enumerate() {
             // A value repeated may be one offer bought once for all its slots: counting it once
             // is a bound whatever the price list, because no cost falls with the count.
-            if position > 0 && slots[position - 1].value == slot.value {
+            if position > 0 && values[position - 1] == value {
                 least[position] = least[position - 1];
             } else {
-                least[position] = self.least_cost(slot.value);
+                least[position] = self.least.by_value[value as usize];
                 sum = sum + least[position];
             }
         }
         if sum > ceiling {
             return;
         }
-        for (position, slot) in slots.iter().enumerate() {
+        let combo = self.space.combination(self.net, self.connection, values);
+        if combo.mismatch > self.net.goal.most_ppm || !visitor.wants(&combo) {
+            return;
+        }
+        for (position, slot) in combo.slots().iter().enumerate() {
             let most = ceiling - (sum - least[position]);
-            if !self.fill(position, slot, combo, most) {
+            if !self.fill(position, slot, &combo, most) {
                 return;
             }
         }
-        self.choose(net, index, combo, ceiling, visitor);
-    }
-
-    fn least_cost(&mut self, value: u32) -> C {
-        let market = self.space.market;
-        *self.least[value as usize].get_or_insert_with(|| {
-            market
-                .stocked(value)
-                .iter()
-                .filter(|s| self.errors[s.of as usize].usable)
-                .map(|s| self.costs.of(s.offer, 1))
-                .fold(C::HUGE, |a, b| if b < a { b } else { a })
-        })
+        self.choose(&combo, ceiling, visitor);
     }
 
     /// Lists the types that can fill a slot; false when there is none.
@@ -186,7 +384,7 @@ impl<C: Amount> Walker<'_, '_, C> {
                 .filter(|by| {
                     by.cost <= entry.cost
                         && by.made_to_order == entry.made_to_order
-                        && (!self.tight || by.statics <= entry.statics)
+                        && (!self.net.adjusted || by.statics <= entry.statics)
                         && (2..=repeats).all(|count| {
                             self.costs.of(by.offer, count) <= self.costs.of(entry.offer, count)
                         })
@@ -201,14 +399,7 @@ impl<C: Amount> Walker<'_, '_, C> {
     }
 
     /// Tries every combination of the listed types.
-    fn choose(
-        &self,
-        net: &NetSpace,
-        index: u32,
-        combo: &Combo,
-        ceiling: C,
-        visitor: &mut impl NetVisitor<C>,
-    ) {
+    fn choose(&self, combo: &Combo, ceiling: C, visitor: &mut impl NetVisitor<C>) {
         let slots = combo.slots();
         let count = slots.len();
         let lengths = [0, 1, 2].map(|p| if p < count { self.lists[p].len() } else { 1 });
@@ -221,7 +412,7 @@ impl<C: Amount> Walker<'_, '_, C> {
                 let third_from = if same(2) { second } else { 0 };
                 for third in third_from..lengths[2] {
                     let picked = [first, second, third];
-                    self.network(net, index, combo, &picked[..count], ceiling, visitor);
+                    self.network(combo, &picked[..count], ceiling, visitor);
                 }
             }
         }
@@ -229,8 +420,6 @@ impl<C: Amount> Walker<'_, '_, C> {
 
     fn network(
         &self,
-        net: &NetSpace,
-        index: u32,
         combo: &Combo,
         picked: &[usize],
         ceiling: C,
@@ -238,8 +427,6 @@ impl<C: Amount> Walker<'_, '_, C> {
     ) {
         let mut types = [u32::MAX; 3];
         let mut offers = [OfferId(u32::MAX); 3];
-        let mut cost = C::ZERO;
-        let mut counted = 0;
         let mut made: Option<OfferId> = None;
         for (position, &at) in picked.iter().enumerate() {
             let entry = &self.lists[position][at];
@@ -250,12 +437,9 @@ impl<C: Amount> Walker<'_, '_, C> {
             }
         }
         let count = picked.len();
-        while counted < count {
-            let offer = offers[counted];
-            let run = offers[counted..count].iter().take_while(|&&o| o == offer).count();
-            cost = cost + self.costs.of(offer, run as u32);
-            counted += run;
-        }
+        let cost = offers[..count]
+            .chunk_by(|a, b| a == b)
+            .fold(C::ZERO, |sum, run| sum + self.costs.of(run[0], run.len() as u32));
         if cost > ceiling || cost >= C::HUGE {
             return;
         }
@@ -265,7 +449,7 @@ impl<C: Amount> Walker<'_, '_, C> {
         } else {
             network_errors(self.errors, self.space.method, combo, &types[..count])
         };
-        let statics = if net.adjusted { statics + combo.mismatch } else { 0.0 };
-        visitor.take(combo, &NetChoice { combo: index, offers, error, statics, cost });
+        let statics = if self.net.adjusted { statics + combo.mismatch } else { 0.0 };
+        visitor.take(combo, &NetChoice { offers, error, statics, cost });
     }
 }

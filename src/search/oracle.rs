@@ -1,9 +1,11 @@
 //! The pricing oracle: given a cost for every part, the cheapest design of an output that passes.
 
 use super::combos::Combo;
+use crate::circuit::Connection;
+
 use super::costs::{Amount, Costs};
 use super::market::OfferId;
-use super::networks::{NetChoice, NetVisitor, Walk};
+use super::networks::{LeastCosts, NetChoice, NetVisitor, Walk};
 use super::space::{FrameSpace, NetSpace, OutputSpace, PartIn};
 
 /// A design by its indices in an [`OutputSpace`].
@@ -15,10 +17,36 @@ pub struct Pick {
     pub reference: u32,
     /// Amplifier, as an index in the market.
     pub amplifier: u32,
-    /// Combination, as an index in the frame's networks.
-    pub combo: u32,
-    /// Offers of the network's slots.
-    pub offers: [OfferId; 3],
+    /// Its network.
+    pub network: PickedNetwork,
+}
+
+/// A network by its offers.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub struct PickedNetwork {
+    /// How the elements are joined.
+    pub connection: Connection,
+    count: u8,
+    offers: [OfferId; 3],
+}
+
+impl PickedNetwork {
+    /// A network of a combination's slots.
+    #[must_use]
+    pub fn new(combo: &Combo, offers: [OfferId; 3]) -> Self {
+        Self { connection: combo.connection, count: combo.count, offers }
+    }
+
+    /// The offers of its elements; equal ones stand side by side.
+    #[must_use]
+    pub fn offers(&self) -> &[OfferId] {
+        &self.offers[..self.count as usize]
+    }
+
+    /// Distinct offers with their counts.
+    pub fn uses(&self) -> impl Iterator<Item = (OfferId, u32)> + '_ {
+        self.offers().chunk_by(|a, b| a == b).map(|run| (run[0], run.len() as u32))
+    }
 }
 
 /// A reference and an amplifier together.
@@ -37,32 +65,64 @@ pub struct Pair<C> {
 }
 
 /// The pairs of a frame among which a cheapest design can be found.
-pub(super) enum PairFront<C> {
+pub(super) struct PairFront<C> {
     /// Error rising, cost falling: the last that fits is the cheapest.
-    Staircase(Vec<Pair<C>>),
-    /// Cost rising; a second budget has to be looked at.
-    ByCost(Vec<Pair<C>>),
+    staircase: Vec<Pair<C>>,
+    /// Cost rising, for networks beside which the static sum has to be looked at.
+    by_cost: Vec<Pair<C>>,
+    /// No pair has more than this in the static sum.
+    most_statics: f64,
 }
 
 impl<C: Amount> PairFront<C> {
     /// The cheapest pair within an error and a static error.
     pub(super) fn within(&self, error: f64, statics: f64) -> Option<&Pair<C>> {
-        match self {
-            Self::Staircase(pairs) => {
-                let fitting = pairs.partition_point(|p| p.error <= error);
-                fitting.checked_sub(1).map(|last| &pairs[last])
-            }
-            Self::ByCost(pairs) => pairs.iter().find(|p| p.error <= error && p.statics <= statics),
+        if statics >= self.most_statics {
+            let fitting = self.staircase.partition_point(|p| p.error <= error);
+            fitting.checked_sub(1).map(|last| &self.staircase[last])
+        } else {
+            self.by_cost.iter().find(|p| p.error <= error && p.statics <= statics)
         }
     }
 
     /// The least cost of any pair.
     pub(super) fn least(&self) -> Option<C> {
-        match self {
-            Self::Staircase(pairs) => pairs.last(),
-            Self::ByCost(pairs) => pairs.first(),
+        self.staircase.last().map(|pair| pair.cost)
+    }
+
+    /// Sorts pairs and drops those that another beats in every way.
+    pub(super) fn of(pairs: Vec<Pair<C>>, adjusted: bool) -> Self {
+        let by_cost = |a: &Pair<C>, b: &Pair<C>| {
+            a.cost.partial_cmp(&b.cost).unwrap_or(std::cmp::Ordering::Equal)
+        };
+        let by_index =
+            |a: &Pair<C>, b: &Pair<C>| (a.reference, a.amplifier).cmp(&(b.reference, b.amplifier));
+        let mut front = Self { staircase: pairs, by_cost: Vec::new(), most_statics: 0.0 };
+        if adjusted {
+            front.most_statics = front.staircase.iter().map(|p| p.statics).fold(0.0, f64::max);
+            let mut all = front.staircase.clone();
+            all.sort_by(|a, b| {
+                by_cost(a, b).then(a.error.total_cmp(&b.error)).then_with(|| by_index(a, b))
+            });
+            for pair in all {
+                let beaten = |by: &Pair<C>| by.error <= pair.error && by.statics <= pair.statics;
+                if !front.by_cost.iter().any(beaten) {
+                    front.by_cost.push(pair);
+                }
+            }
         }
-        .map(|pair| pair.cost)
+        front.staircase.sort_by(|a, b| {
+            a.error.total_cmp(&b.error).then(by_cost(a, b)).then_with(|| by_index(a, b))
+        });
+        let mut least: Option<C> = None;
+        front.staircase.retain(|pair| {
+            let keep = least.is_none_or(|l| pair.cost < l);
+            if keep {
+                least = Some(pair.cost);
+            }
+            keep
+        });
+        front
     }
 }
 
@@ -92,7 +152,7 @@ impl OutputSpace<'_> {
         covers: impl Fn(u32, u32) -> bool,
     ) -> Vec<(PartIn, C)> {
         let mut kept: Vec<(PartIn, C)> = Vec::new();
-        let plain = self.pairing.all && !frame.tight;
+        let plain = self.pairing.all && frame.adjustment.is_none();
         for &part in parts {
             let price = cost(part.index);
             if price >= C::HUGE {
@@ -100,7 +160,7 @@ impl OutputSpace<'_> {
             }
             let dominates = |(by, by_cost): &(PartIn, C)| {
                 *by_cost <= price
-                    && (!frame.tight || by.statics <= part.statics)
+                    && (frame.adjustment.is_none() || by.statics <= part.statics)
                     && covers(by.index, part.index)
             };
             let dominated =
@@ -144,57 +204,59 @@ impl OutputSpace<'_> {
                 }
             }
         }
-        front_of(pairs, frame.tight)
+        PairFront::of(pairs, frame.adjustment.is_some())
     }
 
     /// The cheapest design that passes, when it costs less than `below`.
     #[must_use]
     pub fn cheapest<C: Amount>(&self, costs: &Costs<C>, below: C) -> Option<(C, Pick)> {
-        let mut best = None;
-        let mut ceiling = below;
-        for net in &self.nets {
-            let mut search = Cheapest::new(self, net, costs, ceiling);
-            if search.frames.is_empty() {
-                continue;
-            }
-            self.walk(net, costs, Walk::Fronts, &mut search);
-            if let Some(found) = search.best {
-                ceiling = found.0;
-                best = Some(found);
+        let least = self.least_costs(costs);
+        let mut search = Cheapest { ceiling: below, best: None };
+        let fronts: Vec<Vec<FrameFront<'_, '_, C>>> =
+            self.nets.iter().map(|net| self.frame_fronts(net, costs, below)).collect();
+        // Few elements first: their designs lower the ceiling for the many others.
+        for count in 1..=self.market.request.network_elements {
+            for (net, fronts) in self.nets.iter().zip(&fronts) {
+                let least = &least[usize::from(net.adjusted)];
+                let mut visitor =
+                    CheapestIn { space: self, net, component: costs.component, fronts, search };
+                self.walk(net, count, costs, least, Walk::Fronts, &mut visitor);
+                search = visitor.search;
             }
         }
-        best
+        search.best
     }
-}
 
-/// Sorts pairs and drops those that another beats in every way.
-pub(super) fn front_of<C: Amount>(mut pairs: Vec<Pair<C>>, tight: bool) -> PairFront<C> {
-    let by_cost =
-        |a: &Pair<C>, b: &Pair<C>| a.cost.partial_cmp(&b.cost).unwrap_or(std::cmp::Ordering::Equal);
-    let by_index =
-        |a: &Pair<C>, b: &Pair<C>| (a.reference, a.amplifier).cmp(&(b.reference, b.amplifier));
-    if tight {
-        pairs.sort_by(|a, b| {
-            by_cost(a, b).then(a.error.total_cmp(&b.error)).then_with(|| by_index(a, b))
+    /// Least element costs, without and with an adjustment.
+    pub(super) fn least_costs<C: Amount>(&self, costs: &Costs<C>) -> [LeastCosts<C>; 2] {
+        [false, true].map(|adjusted| LeastCosts::new(self, adjusted, costs))
+    }
+
+    /// The frames of a reference voltage that cost less than `below`, the cheapest first.
+    fn frame_fronts<C: Amount>(
+        &self,
+        net: &NetSpace,
+        costs: &Costs<C>,
+        below: C,
+    ) -> Vec<FrameFront<'_, '_, C>> {
+        let mut fronts: Vec<FrameFront<'_, '_, C>> = net
+            .frames
+            .iter()
+            .filter_map(|&index| {
+                let frame = &self.frames[index];
+                let cost = self.frame_cost(frame, costs);
+                let pairs = self.pair_front(frame, costs);
+                let least = cost + pairs.least()?;
+                let index = index as u32;
+                (least < below).then_some(FrameFront { index, frame, cost, least, pairs })
+            })
+            .collect();
+        fronts.sort_by(|a, b| {
+            let by_cost = a.least.partial_cmp(&b.least).unwrap_or(std::cmp::Ordering::Equal);
+            by_cost.then(a.index.cmp(&b.index))
         });
-        let mut kept: Vec<Pair<C>> = Vec::new();
-        for pair in pairs {
-            if !kept.iter().any(|by| by.error <= pair.error && by.statics <= pair.statics) {
-                kept.push(pair);
-            }
-        }
-        return PairFront::ByCost(kept);
+        fronts
     }
-    pairs.sort_by(|a, b| {
-        a.error.total_cmp(&b.error).then(by_cost(a, b)).then_with(|| by_index(a, b))
-    });
-    let mut kept: Vec<Pair<C>> = Vec::new();
-    for pair in pairs {
-        if kept.last().is_none_or(|last| pair.cost < last.cost) {
-            kept.push(pair);
-        }
-    }
-    PairFront::Staircase(kept)
 }
 
 struct FrameFront<'s, 'a, C> {
@@ -205,63 +267,32 @@ struct FrameFront<'s, 'a, C> {
     pairs: PairFront<C>,
 }
 
-struct Cheapest<'s, 'a, C> {
-    space: &'s OutputSpace<'a>,
-    component: C,
-    /// By least cost.
-    frames: Vec<FrameFront<'s, 'a, C>>,
+/// The best design so far.
+#[derive(Clone, Copy)]
+struct Cheapest<C> {
     ceiling: C,
     best: Option<(C, Pick)>,
-    adjusted: bool,
 }
 
-impl<'s, 'a, C: Amount> Cheapest<'s, 'a, C> {
-    fn new(space: &'s OutputSpace<'a>, net: &NetSpace, costs: &Costs<C>, ceiling: C) -> Self {
-        let mut frames: Vec<FrameFront<'s, 'a, C>> = net
-            .frames
-            .iter()
-            .filter_map(|&index| {
-                let frame = &space.frames[index];
-                let cost = space.frame_cost(frame, costs);
-                let pairs = space.pair_front(frame, costs);
-                let least = cost + pairs.least()?;
-                (least < ceiling).then_some(FrameFront {
-                    index: index as u32,
-                    frame,
-                    cost,
-                    least,
-                    pairs,
-                })
-            })
-            .collect();
-        frames.sort_by(|a, b| {
-            a.least
-                .partial_cmp(&b.least)
-                .unwrap_or(std::cmp::Ordering::Equal)
-                .then(a.index.cmp(&b.index))
-        });
-        Self {
-            space,
-            component: costs.component,
-            frames,
-            ceiling,
-            best: None,
-            adjusted: net.adjusted,
-        }
-    }
+struct CheapestIn<'s, 'a, C> {
+    space: &'s OutputSpace<'a>,
+    net: &'s NetSpace,
+    component: C,
+    fronts: &'s [FrameFront<'s, 'a, C>],
+    search: Cheapest<C>,
 }
 
-impl<C: Amount> NetVisitor<C> for Cheapest<'_, '_, C> {
-    fn ceiling(&self, combo: &Combo) -> Option<C> {
-        let least = self.frames.first()?.least + self.component.times(u32::from(combo.count));
-        (least < self.ceiling).then(|| self.ceiling - least)
+impl<C: Amount> NetVisitor<C> for CheapestIn<'_, '_, C> {
+    fn ceiling(&self, count: u32) -> Option<C> {
+        let least = self.fronts.first()?.least + self.component.times(count);
+        (least < self.search.ceiling).then(|| self.search.ceiling - least)
     }
 
     fn take(&mut self, combo: &Combo, choice: &NetChoice<C>) {
         let network = choice.cost + self.component.times(u32::from(combo.count));
-        let systematic = if self.adjusted { 0.0 } else { combo.mismatch };
-        for front in &self.frames {
-            if network + front.least >= self.ceiling {
+        let systematic = if self.net.adjusted { 0.0 } else { combo.mismatch };
+        for front in self.fronts {
+            if network + front.least >= self.search.ceiling {
                 break;
             }
             let Some(room) = self.space.room(&front.frame.own, systematic) else { continue };
@@ -269,16 +300,14 @@ impl<C: Amount> NetVisitor<C> for Cheapest<'_, '_, C> {
                 front.pairs.within(room - choice.error, front.frame.statics_room - choice.statics);
             if let Some(pair) = fits {
                 let cost = network + front.cost + pair.cost;
-                if cost < self.ceiling {
-                    self.ceiling = cost;
+                if cost < self.search.ceiling {
                     let pick = Pick {
                         frame: front.index,
                         reference: pair.reference,
                         amplifier: pair.amplifier,
-                        combo: choice.combo,
-                        offers: choice.offers,
+                        network: PickedNetwork::new(combo, choice.offers),
                     };
-                    self.best = Some((cost, pick));
+                    self.search = Cheapest { ceiling: cost, best: Some((cost, pick)) };
                 }
             }
         }

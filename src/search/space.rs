@@ -6,13 +6,14 @@
 
 use rayon::prelude::*;
 
-use crate::circuit::{Contribution, Frame, LiftStack};
+use crate::circuit::{Connection, Contribution, Frame, LiftStack};
 use crate::quantity::{Exact, Volts};
 use crate::request::{Budget, Output, Unstated};
 
-use super::combos::{Combo, Goal, ValueTable};
+use super::combos::{Combo, Goal};
 use super::errors::{TypeErrors, type_errors};
-use super::market::{Market, distinct_voltages};
+use super::market::{Market, OfferId, distinct_voltages};
+use super::networks::ValueTable;
 use super::pairing::Pairing;
 
 /// A reference or amplifier within a frame.
@@ -41,8 +42,8 @@ pub struct FrameSpace<'a> {
     pub own: Contribution,
     /// Static ppm that the parts may have together; infinite without an adjustment.
     pub statics_room: f64,
-    /// Whether some design of the frame can exceed the room.
-    pub tight: bool,
+    /// The most that a reference and an amplifier of the frame have together.
+    pub pair_statics: f64,
     /// References that stand in this frame, by error.
     pub references: Vec<PartIn>,
     /// Amplifiers that stand in this frame, by error.
@@ -54,8 +55,8 @@ pub struct FrameSpace<'a> {
 pub struct NetSpace {
     /// Whether the frames have an adjustment.
     pub adjusted: bool,
-    /// Value combinations near enough to R*.
-    pub combos: Vec<Combo>,
+    /// How near to R* a network must come.
+    pub goal: Goal,
     /// Frames that use these networks.
     pub frames: Vec<usize>,
 }
@@ -69,6 +70,8 @@ pub struct OutputSpace<'a> {
     pub pairing: &'a Pairing,
     /// Element errors by type, without and with an adjustment.
     pub errors: &'a [Vec<TypeErrors>; 2],
+    /// The values that networks are made of.
+    pub values: &'a ValueTable,
     /// The output.
     pub output: &'a Output,
     /// Budget method.
@@ -88,9 +91,8 @@ pub struct Common {
     pub pairing: Pairing,
     /// Element errors by type, without and with an adjustment.
     pub errors: [Vec<TypeErrors>; 2],
-    ohms: Vec<f64>,
-    listed: Vec<u32>,
-    made_only: Vec<u32>,
+    /// The values that networks are made of.
+    pub values: ValueTable,
     voltages: Vec<Exact<Volts>>,
 }
 
@@ -115,9 +117,11 @@ impl Common {
         Self {
             pairing: plain.as_ref().map_or_else(Pairing::default, |f| Pairing::new(market, f)),
             errors,
-            ohms: market.values.iter().map(|v| v.value().value()).collect(),
-            listed,
-            made_only,
+            values: ValueTable {
+                ohms: market.values.iter().map(|v| v.value().value()).collect(),
+                listed,
+                made_only,
+            },
             voltages: distinct_voltages(&market.references),
         }
     }
@@ -140,6 +144,7 @@ impl<'a> OutputSpace<'a> {
             market,
             pairing: &common.pairing,
             errors: &common.errors,
+            values: &common.values,
             output,
             method: market.request.budget,
             most_ppm: most_ppm / (1.0 - TOLERANCE),
@@ -160,7 +165,7 @@ impl<'a> OutputSpace<'a> {
             .into_par_iter()
             .filter_map(|(voltage, lift, adjustment)| space.frame(voltage, lift, adjustment))
             .collect();
-        space.attach_networks(common, frames);
+        space.attach_networks(frames);
         space
     }
 
@@ -215,6 +220,7 @@ impl<'a> OutputSpace<'a> {
             |a: &PartIn, b: &PartIn| a.error.total_cmp(&b.error).then(a.index.cmp(&b.index));
         references.sort_by(by_error);
         amplifiers.sort_by(by_error);
+        let most = |parts: &[PartIn]| parts.iter().map(|p| p.statics).fold(0.0, f64::max);
         Some(FrameSpace {
             frame,
             lift,
@@ -222,7 +228,7 @@ impl<'a> OutputSpace<'a> {
             net: usize::MAX,
             own,
             statics_room,
-            tight: false,
+            pair_statics: most(&references) + most(&amplifiers),
             references,
             amplifiers,
         })
@@ -245,47 +251,51 @@ impl<'a> OutputSpace<'a> {
         (room >= 0.0).then_some(room)
     }
 
-    /// Finds the networks of every reference voltage, as far off R* as the slackest frame bears.
-    fn attach_networks(&mut self, common: &Common, frames: Vec<FrameSpace<'a>>) {
-        let mut keys: Vec<(Volts, bool)> =
-            frames.iter().map(|f| (f.frame.vref(), f.adjustment.is_some())).collect();
-        keys.sort_by(|a, b| a.0.value().total_cmp(&b.0.value()).then(a.1.cmp(&b.1)));
-        keys.dedup();
-        self.nets = keys
-            .par_iter()
-            .map(|&(voltage, adjusted)| {
-                let users = || {
-                    frames.iter().enumerate().filter(move |(_, f)| {
-                        f.frame.vref() == voltage && f.adjustment.is_some() == adjusted
-                    })
-                };
-                let most_ppm = users().map(|(_, f)| self.mismatch_room(f)).fold(-1.0, f64::max);
-                let table = ValueTable {
-                    ohms: &common.ohms,
-                    listed: &common.listed,
-                    made_only: &common.made_only,
-                };
+    /// Says for every reference voltage how far off R* the slackest frame bears a network.
+    fn attach_networks(&mut self, mut frames: Vec<FrameSpace<'a>>) {
+        for index in 0..frames.len() {
+            let (voltage, adjusted) =
+                (frames[index].frame.vref(), frames[index].adjustment.is_some());
+            let most_ppm = self.mismatch_room(&frames[index]);
+            let known = self
+                .nets
+                .iter()
+                .position(|net| net.goal.vref == voltage.value() && net.adjusted == adjusted);
+            let at = known.unwrap_or_else(|| {
                 let goal = Goal {
                     vref: voltage.value(),
                     target_ohms: voltage.value() / self.output.current.value().value(),
                     most_ppm,
-                    elements: self.market.request.network_elements,
                 };
-                let combos = if most_ppm < 0.0 { Vec::new() } else { table.within(goal) };
-                NetSpace { adjusted, combos, frames: users().map(|(index, _)| index).collect() }
-            })
-            .collect();
-        self.frames = frames;
-        for (net_index, net) in self.nets.iter().enumerate() {
-            let dearest = self.most_network_statics(net);
-            for &index in &net.frames {
-                let frame = &mut self.frames[index];
-                frame.net = net_index;
-                let most = |parts: &[PartIn]| parts.iter().map(|p| p.statics).fold(0.0, f64::max);
-                let worst = most(&frame.references) + most(&frame.amplifiers) + dearest;
-                frame.tight = worst > frame.statics_room;
-            }
+                self.nets.push(NetSpace { adjusted, goal, frames: Vec::new() });
+                self.nets.len() - 1
+            });
+            let net = &mut self.nets[at];
+            net.goal.most_ppm = net.goal.most_ppm.max(most_ppm);
+            net.frames.push(index);
+            frames[index].net = at;
         }
+        self.frames = frames;
+    }
+
+    /// Values joined to a network: shares, volts, watts and mismatch.
+    #[must_use]
+    pub fn combination(&self, net: &NetSpace, connection: Connection, values: &[u32]) -> Combo {
+        let mut ohms = [(0, 0.0); 3];
+        for (place, &value) in ohms.iter_mut().zip(values) {
+            *place = (value, self.values.ohms[value as usize]);
+        }
+        Combo::new(connection, &ohms[..values.len()], net.goal.vref, net.goal.target_ohms)
+    }
+
+    /// The value combination of a network.
+    #[must_use]
+    pub fn combo_of(&self, net: &NetSpace, connection: Connection, offers: &[OfferId]) -> Combo {
+        let mut values = [0; 3];
+        for (place, &offer) in values.iter_mut().zip(offers) {
+            *place = self.market.resistor(offer).0;
+        }
+        self.combination(net, connection, &values[..offers.len()])
     }
 
     /// The largest mismatch that can pass in a frame beside its best parts, in ppm.
@@ -305,26 +315,6 @@ impl<'a> OutputSpace<'a> {
                 self.most_ppm - frame.own.systematic - (frame.own.random + errors).sqrt()
             }
         }
-    }
-
-    /// An upper bound on the static sum of any network: enough to see that a range never binds.
-    fn most_network_statics(&self, net: &NetSpace) -> f64 {
-        if !net.adjusted {
-            return 0.0;
-        }
-        net.combos
-            .iter()
-            .map(|combo| {
-                let elements = combo.slots().iter().map(|slot| {
-                    self.market
-                        .stocked(slot.value)
-                        .iter()
-                        .map(|s| self.errors[1][s.of as usize].statics_of(slot))
-                        .fold(0.0, f64::max)
-                });
-                combo.mismatch + elements.sum::<f64>()
-            })
-            .fold(0.0, f64::max)
     }
 }
 

@@ -8,9 +8,8 @@ use crate::circuit::Connection;
 
 use super::combos::Combo;
 use super::costs::Costs;
-use super::market::OfferId;
 use super::networks::{NetChoice, NetVisitor, Walk};
-use super::oracle::Pick;
+use super::oracle::{Pick, PickedNetwork};
 use super::space::{FrameSpace, NetSpace, OutputSpace};
 
 /// Totals closer than this, relative, are equal.
@@ -29,9 +28,13 @@ impl OutputSpace<'_> {
         admit: &dyn Fn(&Pick) -> bool,
     ) -> Option<Pick> {
         let mut ties = Ties { least: f64::INFINITY, found: Vec::new() };
+        let least = self.least_costs(costs);
         for net in &self.nets {
             let mut search = TieSearch::new(self, net, costs, cost, &mut ties, admit);
-            self.walk(net, costs, Walk::All, &mut search);
+            for count in 1..=self.market.request.network_elements {
+                let least = &least[usize::from(net.adjusted)];
+                self.walk(net, count, costs, least, Walk::All, &mut search);
+            }
         }
         let bound = ties.least * (1.0 + EQUAL);
         ties.found.retain(|(total, _)| *total <= bound);
@@ -47,7 +50,7 @@ impl OutputSpace<'_> {
         let market = self.market;
         let frame = &self.frames[pick.frame as usize];
         let mut elements: Vec<String> =
-            self.elements(pick).iter().map(|&o| market.order_code(o)).collect();
+            pick.network.offers().iter().map(|&o| market.order_code(o)).collect();
         elements.sort();
         let mut codes = vec![
             market.order_code(market.reference_offer(pick.reference)),
@@ -73,21 +76,9 @@ impl OutputSpace<'_> {
     fn by_build(&self, a: &Pick, b: &Pick) -> Ordering {
         let build = |pick: &Pick| {
             let diodes = self.frames[pick.frame as usize].lift.map_or(0, |(_, count)| count);
-            (self.combo(pick).connection == Connection::Parallel, diodes)
+            (pick.network.connection == Connection::Parallel, diodes)
         };
         build(a).cmp(&build(b))
-    }
-
-    /// The value combination of a design.
-    #[must_use]
-    pub fn combo(&self, pick: &Pick) -> &Combo {
-        &self.nets[self.frames[pick.frame as usize].net].combos[pick.combo as usize]
-    }
-
-    /// The offers of a design's network, one a slot.
-    #[must_use]
-    pub fn elements<'p>(&self, pick: &'p Pick) -> &'p [OfferId] {
-        &pick.offers[..self.combo(pick).count as usize]
     }
 }
 
@@ -213,9 +204,9 @@ impl<'s, 'a, 't> TieSearch<'s, 'a, 't> {
 }
 
 impl NetVisitor<i64> for TieSearch<'_, '_, '_> {
-    fn ceiling(&self, combo: &Combo) -> Option<i64> {
+    fn ceiling(&self, count: u32) -> Option<i64> {
         let least = self.frames.iter().map(|f| f.least).min()?;
-        let left = self.cost - least - self.component * i64::from(combo.count);
+        let left = self.cost - least - self.component * i64::from(count);
         (left >= 0).then_some(left)
     }
 
@@ -239,8 +230,8 @@ impl NetVisitor<i64> for TieSearch<'_, '_, '_> {
                     break;
                 }
                 if statics <= frame.statics_room - choice.statics {
-                    let (combo, offers) = (choice.combo, choice.offers);
-                    let pick = Pick { frame: index, reference, amplifier, combo, offers };
+                    let network = PickedNetwork::new(combo, choice.offers);
+                    let pick = Pick { frame: index, reference, amplifier, network };
                     if (self.admit)(&pick) {
                         self.ties.offer(total, pick);
                     }
