@@ -70,6 +70,12 @@ pub trait Parse: Sized {
     /// # Errors
     /// Says what was found and what to write instead.
     fn parse(text: &str, sign: Sign) -> Result<Self, FigureError>;
+
+    /// The same, with a figure of the field's usual size for hints to show.
+    ///
+    /// # Errors
+    /// Says what was found and what to write instead.
+    fn parse_like(text: &str, sign: Sign, example: &str) -> Result<Self, FigureError>;
 }
 
 /// The newtypes of `units.rs`, as what can be made from a decimal.
@@ -91,7 +97,10 @@ macro_rules! readable {
         }
         impl Parse for $name {
             fn parse(text: &str, sign: Sign) -> Result<Self, FigureError> {
-                Ok(Self::from_decimal(read_figure(text, Self::FORM, sign)?))
+                Self::parse_like(text, sign, Self::FORM.example)
+            }
+            fn parse_like(text: &str, sign: Sign, example: &str) -> Result<Self, FigureError> {
+                Ok(Self::from_decimal(read_figure(text, Self::FORM, sign, example)?))
             }
         }
     )+};
@@ -118,7 +127,10 @@ readable! {
 
 impl<Q: Quantity> Parse for Exact<Q> {
     fn parse(text: &str, sign: Sign) -> Result<Self, FigureError> {
-        Ok(Self::from_decimal(read_figure(text, Q::FORM, sign)?))
+        Self::parse_like(text, sign, Q::FORM.example)
+    }
+    fn parse_like(text: &str, sign: Sign, example: &str) -> Result<Self, FigureError> {
+        Ok(Self::from_decimal(read_figure(text, Q::FORM, sign, example)?))
     }
 }
 
@@ -165,7 +177,7 @@ pub fn parse_count(text: &str) -> Result<u64, FigureError> {
 }
 
 /// Reads a figure of one form, exactly, in the unit in which that quantity is held.
-fn read_figure(text: &str, form: &Form, sign: Sign) -> Result<Decimal, FigureError> {
+fn read_figure(text: &str, form: &Form, sign: Sign, example: &str) -> Result<Decimal, FigureError> {
     let whole = text.trim();
     let (mark, unsigned) = leading_mark(whole);
     let resistance = form.numerator == [Base::Ohm] && form.denominator.is_empty();
@@ -175,18 +187,18 @@ fn read_figure(text: &str, form: &Form, sign: Sign) -> Result<Decimal, FigureErr
         } else {
             coded
         };
-        check_sign(value, mark, sign, whole, form.example)?;
+        check_sign(value, mark, sign, whole, example)?;
         return Ok(value);
     }
-    let (number, rest) = leading_number(unsigned, whole, form.example)?;
+    let (number, rest) = leading_number(unsigned, whole, example)?;
     let spelling = rest.trim_start();
     match read_unit(spelling) {
         Some(unit) if form.takes(unit) => {
-            let value = number.scaled(unit.factor, unit.power, mark, whole, form.example)?;
-            check_sign(value, mark, sign, whole, form.example)?;
+            let value = number.scaled(unit.factor, unit.power, mark, whole, example)?;
+            check_sign(value, mark, sign, whole, example)?;
             Ok(value)
         }
-        _ => Err(unit_error(whole, mark, number, spelling, form)),
+        _ => Err(unit_error(whole, mark, number, spelling, form, example)),
     }
 }
 
@@ -197,9 +209,9 @@ fn unit_error(
     number: Number<'_>,
     spelling: &str,
     form: &Form,
+    example: &str,
 ) -> FigureError {
     let figure = shown(whole);
-    let example = form.example;
     if spelling.is_empty() {
         return FigureError {
             message: format!("{figure} has no unit"),
@@ -416,7 +428,7 @@ mod tests {
     #[test]
     fn every_example_reads_as_its_own_form() {
         for form in unit::FORMS {
-            assert!(read_figure(form.example, form, Sign::Positive).is_ok(), "{}", form.name);
+            assert!(read_figure(form.example, form, Sign::Positive, "").is_ok(), "{}", form.name);
         }
     }
 }

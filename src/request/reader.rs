@@ -225,7 +225,7 @@ impl Reader {
     ) -> Option<Q> {
         let entry = group.entry(name)?;
         let text = self.scalar(&entry)?;
-        self.checked(&entry, Q::parse(text, sign))
+        self.checked(&entry, Q::parse_like(text, sign, example_figure(&entry.path)))
     }
 
     /// A range of figures; one figure stands for both ends.
@@ -236,13 +236,14 @@ impl Reader {
         sign: Sign,
     ) -> Option<Range<Q>> {
         let entry = group.entry(name)?;
+        let example = example_figure(&entry.path);
         if let NodeValue::Scalar(text) = &entry.node.value {
-            return self.checked(&entry, Q::parse(text, sign)).map(Range::point);
+            return self.checked(&entry, Q::parse_like(text, sign, example)).map(Range::point);
         }
         let [low, high] = self.ends(&entry)?;
         let (low_text, high_text) = (self.scalar(&low), self.scalar(&high));
-        let low_end = self.checked(&low, Q::parse(low_text?, sign));
-        let high_end = self.checked(&high, Q::parse(high_text?, sign));
+        let low_end = self.checked(&low, Q::parse_like(low_text?, sign, example));
+        let high_end = self.checked(&high, Q::parse_like(high_text?, sign, example));
         self.ordered(&entry, low_end?, high_end?, low_text?, high_text?)
     }
 
@@ -416,6 +417,13 @@ impl<'a> Group<'a> {
 /// A field's path under a group's.
 pub(super) fn joined(path: &str, name: &str) -> String {
     if path.is_empty() { name.to_owned() } else { format!("{path}.{name}") }
+}
+
+/// A figure of a field's usual size: its example, or the first end of that.
+fn example_figure(path: &str) -> &'static str {
+    let example = field_at(path).map_or("", |field| field.example);
+    let ends = example.strip_prefix('[').and_then(|list| list.split(',').next());
+    ends.unwrap_or(example)
 }
 
 /// What a node is, for messages.
