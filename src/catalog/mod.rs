@@ -10,6 +10,7 @@ mod load;
 mod model;
 mod places;
 mod record;
+mod refusals;
 mod schema;
 pub mod stream;
 mod suggest;

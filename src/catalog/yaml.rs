@@ -14,6 +14,7 @@ use serde::de::{
 };
 
 use super::places::Places;
+use super::refusals::{TOO_DEEP, refuse};
 
 /// A line and column, both from 1, columns in characters.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -74,9 +75,7 @@ pub struct YamlFault {
 /// A syntax fault, with its place in the file.
 pub fn read_document(text: &str, first_line: usize) -> Result<Option<Node>, YamlFault> {
     let places = Places::new(text, first_line);
-    refuse_control_characters(text, &places)?;
-    refuse_deep_brackets(text, &places)?;
-    refuse_repeated_anchors(text, &places)?;
+    refuse(text, &places)?;
     let mut nodes_left = text.len() + SPARE_NODES;
     let shape = ShapeSeed { nodes_left: &mut nodes_left, key: false }
         .deserialize(serde_yaml::Deserializer::from_str(text))
@@ -105,75 +104,6 @@ fn own<E: serde::de::Error>(message: &str, hint: &str, offset: Option<usize>) ->
 
 fn tag_refused<E: serde::de::Error>(tag: &str, offset: Option<usize>) -> E {
     own(&format!("a tag ({tag})"), "tags are not read; write the plain value", offset)
-}
-
-/// The library reports these without a place.
-fn refuse_control_characters(text: &str, places: &Places<'_>) -> Result<(), YamlFault> {
-    let refused = |c: char| {
-        (c.is_control() && !matches!(c, '\t' | '\n' | '\r' | '\u{85}'))
-            || matches!(c, '\u{fffe}' | '\u{ffff}')
-    };
-    let Some((at, found)) = text.char_indices().find(|&(_, c)| refused(c)) else { return Ok(()) };
-    Err(YamlFault {
-        at: places.spot(at),
-        message: format!("the control character U+{:04X}", u32::from(found)),
-        hint: Some("remove it, or write it as an escape in a double-quoted text".to_owned()),
-    })
-}
-
-/// The library's time grows with the square of the depth of brackets, and it finds out only at
-/// the end. Brackets within texts count too, which no sane document notices.
-fn refuse_deep_brackets(text: &str, places: &Places<'_>) -> Result<(), YamlFault> {
-    let mut depth = 0usize;
-    for (at, byte) in text.bytes().enumerate() {
-        match byte {
-            b'[' | b'{' => depth += 1,
-            b']' | b'}' => depth = depth.saturating_sub(1),
-            _ => {}
-        }
-        if depth > DEEPEST {
-            let (message, hint) = TOO_DEEP;
-            return Err(YamlFault {
-                at: places.spot(at),
-                message: message.to_owned(),
-                hint: Some(hint.to_owned()),
-            });
-        }
-    }
-    Ok(())
-}
-
-/// More brackets than any document nests.
-const DEEPEST: usize = 256;
-
-const TOO_DEEP: (&str, &str) = ("nested too deeply", "a record needs no more than a few levels");
-
-/// The library resolves aliases wrongly once an anchor name is defined again, so a document that
-/// has aliases may define each anchor once.
-fn refuse_repeated_anchors(text: &str, places: &Places<'_>) -> Result<(), YamlFault> {
-    let token = |mark: char| {
-        text.match_indices(mark).filter_map(move |(at, _)| {
-            let before = text.get(..at)?.chars().next_back();
-            let opens = |c: char| c.is_whitespace() || matches!(c, '[' | '{' | ',' | '-' | ':');
-            let ends = |c: char| c.is_whitespace() || matches!(c, ']' | '}' | ',');
-            let name = text.get(at + 1..)?.split(ends).next().filter(|name| !name.is_empty())?;
-            before.is_none_or(opens).then_some((at, name))
-        })
-    };
-    if token('*').next().is_none() {
-        return Ok(());
-    }
-    let mut seen = std::collections::BTreeSet::new();
-    for (at, name) in token('&') {
-        if !seen.insert(name) {
-            return Err(YamlFault {
-                at: places.spot(at),
-                message: format!("the anchor &{name} is defined twice"),
-                hint: Some("give each anchor of a document its own name".to_owned()),
-            });
-        }
-    }
-    Ok(())
 }
 
 /// The kinds of nodes of a document, without their texts.
