@@ -30,6 +30,17 @@ impl FlagDef {
     pub const fn is_switch(&self) -> bool {
         matches!(self.field.form, FieldForm::Switch)
     }
+
+    /// What counts when the flag is not given, as it would be written; a file has no default for
+    /// the name and the quantity.
+    #[must_use]
+    pub fn default_text(&self) -> Option<&'static str> {
+        match self.name {
+            "name" => Some(DEFAULT_NAME),
+            "quantity" => Some(DEFAULT_QUANTITY),
+            _ => self.field.default,
+        }
+    }
 }
 
 /// Flag names, the paths of their fields, and examples, in the order of the help text.

@@ -33,6 +33,20 @@ fn flags_ask_for_one_output_as_a_file_does() {
     assert!(request.conditions.guarded);
 }
 
+/// What the help text says of a default is what leaving the flag out gives.
+#[test]
+fn defaults_of_flags_are_true() {
+    let least = flags(&FEWEST);
+    for flag in request_flags() {
+        let Some(default) = flag.default_text().filter(|_| flag.name != "coverage") else {
+            continue;
+        };
+        let mut pairs = FEWEST.to_vec();
+        pairs.push((flag.name, default));
+        assert_eq!(flags(&pairs), least, "{}", flag.name);
+    }
+}
+
 /// Every example in the help text is a good value of its flag.
 #[test]
 fn every_flag_is_read() {
