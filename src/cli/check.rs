@@ -21,7 +21,7 @@ pub(super) fn run(
     common: &Common,
     world: &mut World<'_>,
 ) -> Result<Exit, Failure> {
-    let loaded = common.load_catalog()?;
+    let loaded = common.load_catalog();
     let check = CatalogCheck {
         folder: common.catalog.display().to_string(),
         files: loaded.files,

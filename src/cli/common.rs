@@ -6,7 +6,6 @@ use std::time::Duration;
 
 use clap::{Args, ValueEnum};
 
-use super::exit::Failure;
 use super::world::World;
 use crate::catalog::{self, Fault, Loaded};
 use crate::quantity::{Parse, Seconds, Sign};
@@ -78,23 +77,18 @@ impl Common {
     }
 
     /// Reads the catalogue.
-    ///
-    /// # Errors
-    /// There is no such folder.
-    pub(super) fn load_catalog(&self) -> Result<Loaded, Failure> {
-        if self.catalog.is_dir() {
-            return Ok(catalog::load(&self.catalog));
-        }
-        Err(Failure::Usage {
-            message: format!("there is no catalogue folder {}", self.catalog.display()),
-            hint: "Give the folder of your part records with --catalog DIR.".to_owned(),
-        })
+    pub(super) fn load_catalog(&self) -> Loaded {
+        catalog::load(&self.catalog)
     }
 
     /// The faults of a catalogue that stop the run: its errors, or none where bad records are to
-    /// be left out.
+    /// be left out. Without a folder there is nothing to go on with.
     pub(super) fn stopping(&self, loaded: &Loaded) -> Vec<Fault> {
-        if self.skip_bad_records { Vec::new() } else { loaded.errors().cloned().collect() }
+        if self.skip_bad_records && self.catalog.is_dir() {
+            Vec::new()
+        } else {
+            loaded.errors().cloned().collect()
+        }
     }
 
     /// A remark on standard error, unless the user wants quiet.

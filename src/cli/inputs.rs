@@ -24,7 +24,7 @@ pub(super) struct Inputs {
 /// Reads the catalogue and the request, from its file or from flags.
 ///
 /// # Errors
-/// Neither file nor flags; no catalogue; all errors of both, by place.
+/// Neither file nor flags; all errors of both.
 pub(super) fn read(
     file: Option<&Path>,
     flags: &RequestFlags,
@@ -35,7 +35,7 @@ pub(super) fn read(
         None if flags.is_empty() => return Err(nothing_asked()),
         None => request::from_flags(flags.pairs()),
     };
-    let loaded = common.load_catalog()?;
+    let loaded = common.load_catalog();
     let mut faults: Vec<Fault> = common.stopping(&loaded);
     match request {
         Ok(request) if faults.is_empty() => Ok(Inputs {

@@ -18,7 +18,7 @@ pub fn check(check: &CatalogCheck) -> Result<String, CsvError> {
     for count in &check.counts {
         let mut row = vec![String::new(); HEADER.len()];
         let message = format!(
-            "{} types, {} order codes, {} types made to order",
+            "types {}, order codes {}, types made to order {}",
             count.types, count.offers, count.made_to_order
         );
         for (index, cell) in [(0, "kind"), (4, count.kind.word()), (6, message.as_str())] {

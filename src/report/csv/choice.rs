@@ -33,7 +33,7 @@ const HEADER: [&str; 13] = [
     "output",
     "item",
     "order_code",
-    "needed",
+    "quantity",
     "bought",
     "each",
     "cost",

@@ -27,7 +27,7 @@ pub(super) fn write(page: &mut Page, output: &OutputAnswer, evaluation: &Evaluat
         .column("", Side::Left)
         .column("ppm", Side::Right)
         .column("share", Side::Right)
-        .optional("", Side::Left);
+        .optional(1, "", Side::Left);
     let counted = sorted.iter().filter(|line| line.ppm.value() > 0.0);
     let mut rows: Vec<(String, Ppm)> = counted.map(|line| (name(line), line.ppm)).collect();
     rows.push((TOTAL.to_owned(), evaluation.total));

@@ -31,7 +31,7 @@ pub fn check(check: &CatalogCheck, screen: Screen) -> String {
         .column("", Side::Left)
         .column("types", Side::Right)
         .column("order codes", Side::Right)
-        .optional("", Side::Left);
+        .optional(1, "", Side::Left);
     for count in &check.counts {
         let made = match count.made_to_order {
             0 => String::new(),

@@ -50,9 +50,12 @@ fn write_table(page: &mut Page, outputs: &[OutputAnswer]) {
     } else {
         write_stacked(page, grid);
     }
-    let methods: BTreeSet<&str> = outputs.iter().map(|output| output.method).collect();
+    let chosen = outputs.iter().filter(|output| matches!(output.verdict, Verdict::Chosen(..)));
+    let methods: BTreeSet<&str> = chosen.map(|output| output.method).collect();
     let methods: Vec<&str> = methods.into_iter().collect();
-    page.led(INDENT, "totals: ", INDENT * 2, None, &format!("{}, in ppm", methods.join(", ")));
+    if !methods.is_empty() {
+        page.led(INDENT, "totals: ", INDENT * 2, None, &format!("{}, in ppm", methods.join(", ")));
+    }
     let common: Vec<String> = common.iter().map(|(title, text)| labelled(title, text)).collect();
     if !common.is_empty() {
         page.led(INDENT, "every design: ", INDENT * 2, None, &common.join(", "));

@@ -20,7 +20,8 @@ pub(super) enum Side {
 struct Column {
     title: &'static str,
     side: Side,
-    optional: bool,
+    /// Columns of the highest rank are left out first; those without one, never.
+    rank: Option<u8>,
 }
 
 /// One cell.
@@ -38,7 +39,7 @@ pub(super) struct Grid {
 }
 
 /// Space between columns.
-const BETWEEN: usize = 2;
+const BETWEEN: u16 = 2;
 
 impl Grid {
     pub(super) fn new() -> Self {
@@ -47,13 +48,14 @@ impl Grid {
 
     /// Adds a column that is always shown.
     pub(super) fn column(mut self, title: &'static str, side: Side) -> Self {
-        self.columns.push(Column { title, side, optional: false });
+        self.columns.push(Column { title, side, rank: None });
         self
     }
 
-    /// Adds a column that a narrow page leaves out; of several, the last goes first.
-    pub(super) fn optional(mut self, title: &'static str, side: Side) -> Self {
-        self.columns.push(Column { title, side, optional: true });
+    /// Adds a column that a narrow page leaves out: those of the highest rank first, and those of
+    /// one rank together.
+    pub(super) fn optional(mut self, rank: u8, title: &'static str, side: Side) -> Self {
+        self.columns.push(Column { title, side, rank: Some(rank) });
         self
     }
 
@@ -83,7 +85,7 @@ impl Grid {
             let title = self.columns.get(index).map_or(0, |column| column.title.width());
             cells.map(|cell| cell.text.width()).max().unwrap_or(0).max(title)
         };
-        (0..columns).map(widest).sum::<usize>() + BETWEEN * columns.saturating_sub(1)
+        (0..columns).map(widest).sum::<usize>() + usize::from(BETWEEN) * columns.saturating_sub(1)
     }
 
     /// Takes out columns in which every row that says anything says the same, but not those named
@@ -158,8 +160,9 @@ impl Grid {
             let cells = cells.map(|(entry, column)| styled(&entry.text, entry.ink, column.side));
             table.add_row(cells.collect::<Vec<_>>());
         }
-        for column in table.column_iter_mut() {
-            column.set_padding((0, u16::try_from(BETWEEN).unwrap_or(2)));
+        let last = self.columns.len().saturating_sub(1);
+        for (index, column) in table.column_iter_mut().enumerate() {
+            column.set_padding((0, if index == last { 0 } else { BETWEEN }));
         }
         table.lines().map(|line| line.trim_end().to_owned()).collect()
     }
@@ -168,10 +171,14 @@ impl Grid {
     pub(super) fn write(mut self, page: &mut Page, indent: usize) {
         let room = page.screen.width.saturating_sub(indent);
         while self.width() > room {
-            let Some(index) = self.columns.iter().rposition(|column| column.optional) else {
+            let Some(rank) = self.columns.iter().filter_map(|column| column.rank).max() else {
                 break;
             };
-            self.drop_column(index);
+            for index in (0..self.columns.len()).rev() {
+                if self.columns.get(index).is_some_and(|column| column.rank == Some(rank)) {
+                    self.drop_column(index);
+                }
+            }
         }
         if self.width() <= room {
             for line in self.lines(page.screen.colour) {
@@ -221,7 +228,7 @@ mod tests {
             .column("order code", Side::Left)
             .column("buy", Side::Right)
             .column("cost", Side::Right)
-            .optional("for", Side::Left);
+            .optional(1, "for", Side::Left);
         grid.row(["REF-A", "1000", "4100.00", "all"]);
         grid.row(["RES-4K99", "25", "9.75", "pt100"]);
         grid

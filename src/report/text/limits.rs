@@ -12,9 +12,9 @@ pub(super) fn write(page: &mut Page, evaluation: &Evaluation) {
     page.heading("How close the limits are", "closest first");
     let mut grid = Grid::new()
         .column("", Side::Left)
-        .optional("is", Side::Right)
-        .optional("", Side::Left)
-        .optional("limit", Side::Right)
+        .optional(1, "is", Side::Right)
+        .optional(1, "", Side::Left)
+        .optional(1, "limit", Side::Right)
         .column("to spare", Side::Right);
     for line in by_closeness(evaluation) {
         let unit = line.limit.def().unit;

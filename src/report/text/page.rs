@@ -39,7 +39,12 @@ pub(super) fn counted(number: u64, one: &str, many: &str) -> String {
 pub(super) fn wrap(text: &str, first: usize, width: usize) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
     let mut line = String::new();
-    for word in text.split(' ').filter(|word| !word.is_empty()) {
+    // Ties give way before a line runs over.
+    let words = text.split(' ').flat_map(|word| {
+        let loose = word.width() > first.min(width);
+        word.split(move |c| loose && c == TIE)
+    });
+    for word in words.filter(|word| !word.is_empty()) {
         let room = if lines.is_empty() { first } else { width };
         if !line.is_empty() && line.width() + 1 + word.width() > room {
             lines.push(std::mem::take(&mut line));
@@ -154,6 +159,14 @@ mod tests {
     #[test]
     fn tied_figures_move_together() {
         assert_eq!(wrap(&format!("about {}", tied("249 kΩ")), 9, 9), ["about", "249\u{a0}kΩ"]);
+    }
+
+    #[test]
+    fn ties_give_way_where_a_line_would_run_over() {
+        assert_eq!(
+            wrap(&tied("reference tempco 105 ppm"), 12, 12),
+            ["reference", "tempco 105", "ppm"]
+        );
     }
 
     #[test]

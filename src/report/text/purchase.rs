@@ -20,14 +20,14 @@ pub(super) fn write(page: &mut Page, choice: &Choice, bill: &Bill) {
     page.heading("What to order", &format!("prices in {}", plain(&choice.currency)));
     let users = users(choice);
     let spare = bill.lines.iter().any(|line| line.bought != line.needed);
-    let mut grid = Grid::new().optional("", Side::Left).column("order code", Side::Left);
+    let mut grid = Grid::new().optional(1, "", Side::Left).column("order code", Side::Left);
     if spare {
         grid = grid.column("need", Side::Right);
     }
     grid = grid.column("buy", Side::Right).column("each", Side::Right).column("cost", Side::Right);
     let family = choice.outputs.len() > 1;
     if family {
-        grid = grid.optional("for", Side::Left);
+        grid = grid.optional(2, "for", Side::Left);
     }
     let each = aligned(bill.lines.iter().map(|line| line.each));
     let cost = aligned(bill.lines.iter().map(|line| line.cost));
