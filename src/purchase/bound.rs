@@ -16,7 +16,7 @@ use rayon::prelude::*;
 
 use crate::search::{Amount, Costs, Listing, OfferId, OutputSpace, Pick};
 
-use super::family::{Family, uses};
+use super::family::Family;
 use super::price::{Step, steps};
 
 /// Where the designs of an output are looked for.
@@ -97,18 +97,15 @@ impl<'s, 'a> Designs<'s, 'a> {
     }
 }
 
-/// Multipliers of one output: prices of parts for all its units.
-type Multipliers = Vec<f64>;
-
 /// The best bound found and what it was found with.
 #[derive(Clone, Debug)]
 pub struct Bound {
     /// The bound in millionths, as computed.
     pub value: f64,
-    /// Multipliers by output and offer.
-    pub multipliers: Vec<Multipliers>,
-    /// The cheapest design of each output at these multipliers, and its cost.
+    /// The cheapest design of each output at the multipliers, and its cost.
     pub picks: Vec<(f64, Pick)>,
+    /// Multipliers that are not at their start: part, user, value.
+    moved: Vec<(u32, u32, f64)>,
 }
 
 impl Bound {
@@ -119,15 +116,36 @@ impl Bound {
     }
 }
 
+/// One output that may use a part.
+#[derive(Clone, Copy, Debug)]
+struct User {
+    output: u32,
+    /// Most of the part in a unit.
+    most: u32,
+    /// Units of the output.
+    quantity: f64,
+    /// Price of one in each unit, for all units: where it started and where it is.
+    start: f64,
+    mu: f64,
+    moved: bool,
+}
+
 /// One part that several outputs may use.
 #[derive(Debug)]
 struct Part {
     offer: OfferId,
     steps: Vec<Step>,
-    /// Lowest unit price.
+    /// The lowest unit price that its users together can reach.
     best: f64,
-    /// Users: output, most of it in a unit.
-    users: Vec<(u32, u32)>,
+    users: Vec<User>,
+}
+
+impl Part {
+    /// What the users' multipliers come to beyond the lowest price.
+    fn surplus(&self) -> f64 {
+        let beyond = |u: &User| f64::from(u.most) * (u.mu - self.best * u.quantity).max(0.0);
+        self.users.iter().map(beyond).sum()
+    }
 }
 
 /// The search for good multipliers.
@@ -137,10 +155,12 @@ pub struct Bounder<'f, 's, 'a> {
     /// What an order line costs; more than it does, when lines are scarce.
     line: f64,
     parts: Vec<Part>,
-    /// Place of each offer in `parts`.
-    place: BTreeMap<OfferId, usize>,
+    /// Place of each offer in `parts`; none for a part that one output alone can use.
+    place: Vec<u32>,
     costs: Vec<Costs<f64>>,
 }
+
+const NO_PLACE: u32 = u32::MAX;
 
 /// How long to go on.
 #[derive(Clone, Copy, Debug)]
@@ -151,53 +171,110 @@ pub struct Effort {
     pub patience: u32,
 }
 
+/// Move of a multiplier, by part and user.
+type Moves = BTreeMap<(u32, u32), f64>;
+
 impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
-    /// Starts at the lowest unit price of every part, or at given multipliers.
+    /// Sets up multipliers for what these designs use: from those of an earlier search, and with
+    /// each part's line cost shared out among the outputs that can still use it. A part that one
+    /// output alone can use has its exact cost there and no multiplier.
     #[must_use]
     pub fn new(
         family: &'f Family<'s, 'a>,
         designs: &[Designs<'s, 'a>],
         extra_line_cost: i64,
-        start: Option<&[Multipliers]>,
+        earlier: Option<&Self>,
     ) -> Self {
-        let mut users: BTreeMap<OfferId, Vec<(u32, u32)>> = BTreeMap::new();
+        let line = (family.terms.line + extra_line_cost) as f64;
+        let market = family.market;
+        let mut users: Vec<Vec<User>> = vec![Vec::new(); market.offers()];
         for (output, of) in designs.iter().enumerate() {
-            for (offer, count) in of.most_counts() {
-                users.entry(offer).or_default().push((output as u32, count));
+            let quantity = family.quantities[output] as f64;
+            for (offer, most) in of.most_counts() {
+                let mu = earlier.map_or(0.0, |e| e.costs[output].of(offer, 1));
+                let output = output as u32;
+                users[offer.index()].push(User {
+                    output,
+                    most,
+                    quantity,
+                    start: mu,
+                    mu,
+                    moved: false,
+                });
             }
         }
-        let parts: Vec<Part> = users
-            .into_iter()
-            .map(|(offer, users)| {
-                let steps: Vec<Step> = if family.terms.priced {
-                    steps(family.market.tariff(offer)).collect()
-                } else {
-                    vec![Step { minimum: 0, each: 0, most: None }]
-                };
-                let best = steps.iter().map(|s| s.each).min().unwrap_or(i64::HUGE) as f64;
-                Part { offer, steps, best, users }
-            })
-            .collect();
-        let place = parts.iter().enumerate().map(|(i, p)| (p.offer, i)).collect();
-        let costs = (0..designs.len())
+        let most = family.most_count();
+        let mut costs: Vec<Costs<f64>> = (0..designs.len())
             .map(|output| {
-                let mut one = vec![f64::HUGE; family.market.offers()];
-                let quantity = family.quantities[output] as f64;
-                for part in &parts {
-                    if part.users.iter().any(|u| u.0 as usize == output) {
-                        let least = part.best * quantity;
-                        let from = start.map_or(least, |s| s[output][part.offer.index()]);
-                        one[part.offer.index()] =
-                            if from < f64::HUGE { from.max(least) } else { least };
-                    }
-                }
                 let component = family.component_cost(output) as f64;
                 let steps = family.adjustment_costs(output).into_iter().map(|c| c as f64).collect();
-                Costs::proportional(family.market, one, component, steps)
+                Costs::by_count(market, most, component, steps, |_, _| f64::HUGE)
             })
             .collect();
-        let line = (family.terms.line + extra_line_cost) as f64;
-        Self { family, line, parts, place, costs }
+        let mut bounder_parts = Vec::new();
+        let mut place = vec![NO_PLACE; market.offers()];
+        for (index, users) in users.into_iter().enumerate() {
+            let offer = OfferId(index as u32);
+            match users.as_slice() {
+                [] => {}
+                [only] => {
+                    let output = only.output as usize;
+                    costs[output].set(offer, |count| {
+                        let needed = family.quantities[output] * u64::from(count);
+                        match family.cost(offer, needed) {
+                            cost if cost >= i64::HUGE => f64::HUGE,
+                            cost => cost as f64 + extra_line_cost as f64,
+                        }
+                    });
+                }
+                _ => {
+                    if let Some(part) = Self::shared_part(family, line, offer, users) {
+                        for user in &part.users {
+                            let mu = user.mu;
+                            costs[user.output as usize].set(offer, |count| mu * f64::from(count));
+                        }
+                        place[index] = bounder_parts.len() as u32;
+                        bounder_parts.push(part);
+                    }
+                }
+            }
+        }
+        Self { family, line, parts: bounder_parts, place, costs }
+    }
+
+    /// Lemma: at multipliers that together exceed the lowest price that all users can reach by no
+    /// more than the line cost, v is not below 0; so what is left of the line cost can be shared
+    /// out among the users, and the outputs' minima only rise.
+    fn shared_part(
+        family: &Family<'_, '_>,
+        line: f64,
+        offer: OfferId,
+        users: Vec<User>,
+    ) -> Option<Part> {
+        let steps: Vec<Step> = if family.terms.priced {
+            steps(family.market.tariff(offer)).collect()
+        } else {
+            vec![Step { minimum: 0, each: 0, most: None }]
+        };
+        let demand: f64 = users.iter().map(|u| f64::from(u.most) * u.quantity).sum();
+        // A step that starts beyond all demand is paid for up to its start.
+        let reach = |s: &Step| s.each as f64 * (s.minimum as f64 / demand).max(1.0);
+        let best = steps.iter().map(reach).min_by(f64::total_cmp)?;
+        let mut part = Part { offer, steps, best, users };
+        for user in &mut part.users {
+            user.mu = user.mu.max(best * user.quantity);
+        }
+        let left = line - part.surplus();
+        if left > 0.0 {
+            let shares: f64 = part.users.iter().map(|u| f64::from(u.most)).sum();
+            for user in &mut part.users {
+                user.mu += left / shares;
+            }
+        }
+        for user in &mut part.users {
+            user.start = user.mu;
+        }
+        Some(part)
     }
 
     /// Looks for multipliers with a high bound. `ceiling` is the cost of a known set. `None` when
@@ -210,26 +287,23 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
         effort: Effort,
         stop: &(dyn Fn() -> bool + Sync),
     ) -> Option<Bound> {
-        let mut best = self.evaluate(designs)?;
-        let (mut reached, mut usage) = best;
-        let mut record = self.record(reached.0, reached.1);
-        let mut direction: Vec<BTreeMap<OfferId, f64>> = vec![BTreeMap::new(); designs.len()];
+        let (mut record, mut usage) = self.evaluate(designs, None)?;
+        let mut direction = Moves::new();
         let (mut size, mut idle) = (1.0, 0);
         for _ in 0..effort.steps {
             let gap = ceiling as f64 - record.value;
-            if gap < 0.5 || size < 5e-3 || stop() {
+            if gap < 0.5 || size < 0.01 || stop() {
                 break;
             }
             let norm = self.turn(&mut direction, &usage);
             if norm <= 0.0 {
                 break;
             }
-            let step = size * (ceiling as f64 - record.value) / norm;
-            self.advance(&direction, step);
-            best = self.evaluate(designs)?;
-            (reached, usage) = best;
-            if reached.0 > record.value + gap * 1e-6 {
-                record = self.record(reached.0, reached.1);
+            self.advance(&direction, size * gap / norm);
+            let reached;
+            (reached, usage) = self.evaluate(designs, Some(&record.picks))?;
+            if reached.value > record.value + gap * 1e-5 {
+                record = reached;
                 idle = 0;
             } else {
                 idle += 1;
@@ -237,8 +311,8 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                     size *= 0.5;
                     idle = 0;
                     self.restore(&record);
-                    (_, usage) = self.evaluate(designs)?;
-                    direction.iter_mut().for_each(BTreeMap::clear);
+                    (_, usage) = self.evaluate(designs, Some(&record.picks))?;
+                    direction.clear();
                 }
             }
         }
@@ -252,62 +326,91 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
         &self.costs[output]
     }
 
-    fn record(&self, value: f64, picks: Vec<(f64, Pick)>) -> Bound {
-        let multipliers = self.costs.iter().map(|c| c.one.clone()).collect();
-        Bound { value, multipliers, picks }
+    fn set(&mut self, part: u32, user: u32, mu: f64) {
+        let part = &mut self.parts[part as usize];
+        let user = &mut part.users[user as usize];
+        user.mu = mu;
+        user.moved = true;
+        self.costs[user.output as usize].set(part.offer, |count| mu * f64::from(count));
     }
 
     fn restore(&mut self, bound: &Bound) {
-        for (costs, multipliers) in self.costs.iter_mut().zip(&bound.multipliers) {
-            costs.one.clone_from(multipliers);
+        for part in 0..self.parts.len() as u32 {
+            for user in 0..self.parts[part as usize].users.len() as u32 {
+                let of = self.parts[part as usize].users[user as usize];
+                if of.moved {
+                    self.set(part, user, of.start);
+                    self.parts[part as usize].users[user as usize].moved = false;
+                }
+            }
+        }
+        for &(part, user, mu) in &bound.moved {
+            self.set(part, user, mu);
         }
     }
 
-    /// The bound at the present multipliers, the designs that reach it, and how far each output's
-    /// use of a part exceeds what the purchase side takes.
-    #[expect(clippy::type_complexity, reason = "two plain pairs, used in one place")]
+    /// The bound at the present multipliers, and how far each output's use of a part exceeds what
+    /// the purchase side takes. Designs that were good before give each output a first ceiling.
     fn evaluate(
         &self,
         designs: &[Designs<'s, 'a>],
-    ) -> Option<((f64, Vec<(f64, Pick)>), Vec<BTreeMap<OfferId, f64>>)> {
+        before: Option<&[(f64, Pick)]>,
+    ) -> Option<(Bound, Moves)> {
         let picks: Vec<(f64, Pick)> = designs
             .par_iter()
-            .zip(&self.costs)
-            .map(|(of, costs)| of.cheapest(costs, f64::HUGE))
-            .collect::<Option<_>>()?;
-        let mut usage: Vec<BTreeMap<OfferId, f64>> = picks
-            .iter()
-            .zip(designs)
-            .map(|((_, pick), of)| {
-                uses(of.space(), pick).into_iter().map(|(o, n)| (o, f64::from(n))).collect()
+            .enumerate()
+            .map(|(output, of)| {
+                let costs = &self.costs[output];
+                let known = before.map(|b| (self.cost_at(output, &b[output].1), b[output].1));
+                let below = known.map_or(f64::HUGE, |k| k.0);
+                of.cheapest(costs, below).or(known)
             })
-            .collect();
-        let mut value: f64 = picks.iter().map(|p| p.0).sum();
-        for part in &self.parts {
-            let (cost, taken) = self.purchase_side(part);
-            value += cost;
-            for (output, count) in taken {
-                *usage[output as usize].entry(part.offer).or_default() -= count;
+            .collect::<Option<_>>()?;
+        let mut usage = Moves::new();
+        for (output, (_, pick)) in picks.iter().enumerate() {
+            for (offer, count) in self.family.uses(output, pick) {
+                if let Some(key) = self.key(offer, output as u32) {
+                    *usage.entry(key).or_default() += f64::from(count);
+                }
             }
         }
-        Some(((value, picks), usage))
+        let mut value: f64 = picks.iter().map(|p| p.0).sum();
+        let mut moved = Vec::new();
+        for (index, part) in self.parts.iter().enumerate() {
+            for (user, of) in part.users.iter().enumerate().filter(|(_, u)| u.moved) {
+                moved.push((index as u32, user as u32, of.mu));
+            }
+            let (cost, taken) = self.purchase_side(part);
+            value += cost;
+            for (user, count) in taken {
+                *usage.entry((index as u32, user)).or_default() -= count;
+            }
+        }
+        Some((Bound { value, picks, moved }, usage))
     }
 
-    /// min(0, v) of a part, and how much of it each output takes at that minimum.
+    /// The cost of a design at the present multipliers.
+    fn cost_at(&self, output: usize, pick: &Pick) -> f64 {
+        let costs = &self.costs[output];
+        self.family.besides_parts(output, pick) as f64
+            + self.family.uses(output, pick).iter().map(|&(o, n)| costs.of(o, n)).sum::<f64>()
+    }
+
+    fn key(&self, offer: OfferId, output: u32) -> Option<(u32, u32)> {
+        let place = self.place[offer.index()];
+        let part = self.parts.get(place as usize)?;
+        let user = part.users.iter().position(|u| u.output == output)?;
+        Some((place, user as u32))
+    }
+
+    /// min(0, v) of a part, and how much of it each user takes at that minimum.
     fn purchase_side(&self, part: &Part) -> (f64, Vec<(u32, f64)>) {
-        let mu = |output: u32| self.costs[output as usize].one[part.offer.index()];
-        let quantity = |output: u32| self.family.quantities[output as usize] as f64;
         // Nothing below zero unless the users' surplus over the lowest price pays the line.
-        let surplus: f64 = part
-            .users
-            .iter()
-            .map(|&(o, n)| f64::from(n) * (mu(o) - part.best * quantity(o)).max(0.0))
-            .sum();
-        if surplus <= self.line {
+        if part.surplus() <= self.line {
             return (0.0, Vec::new());
         }
-        let mut users: Vec<(f64, u32, u32)> =
-            part.users.iter().map(|&(o, n)| (mu(o) / quantity(o), o, n)).collect();
+        let mut users: Vec<(f64, u32)> =
+            part.users.iter().enumerate().map(|(i, u)| (u.mu / u.quantity, i as u32)).collect();
         users.sort_by(|a, b| b.0.total_cmp(&a.0).then(a.1.cmp(&b.1)));
         let mut best = (0.0, Vec::new());
         for step in &part.steps {
@@ -315,8 +418,9 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
             let mut most = step.most.map_or(f64::INFINITY, |m| m as f64);
             let mut taken = Vec::new();
             let (mut bought, mut worth) = (0.0, 0.0);
-            for &(density, output, count) in &users {
-                let whole = f64::from(count) * quantity(output);
+            for &(density, index) in &users {
+                let user = &part.users[index as usize];
+                let whole = f64::from(user.most) * user.quantity;
                 // Up to the step's minimum a further user costs nothing more.
                 let room = if density > each { whole } else { (minimum - bought).max(0.0) };
                 let units = whole.min(room).min(most);
@@ -326,7 +430,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                 most -= units;
                 bought += units;
                 worth += units * density;
-                taken.push((output, units / quantity(output)));
+                taken.push((index, units / user.quantity));
             }
             let value = self.line + each * bought.max(minimum) - worth;
             if value < best.0 {
@@ -337,44 +441,30 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
     }
 
     /// Turns the direction towards the present usage; gives its scaled square length.
-    fn turn(
-        &self,
-        direction: &mut [BTreeMap<OfferId, f64>],
-        usage: &[BTreeMap<OfferId, f64>],
-    ) -> f64 {
-        let mut norm = 0.0;
-        for (output, (old, new)) in direction.iter_mut().zip(usage).enumerate() {
-            for value in old.values_mut() {
-                *value *= 0.9;
-            }
-            for (&offer, &value) in new {
-                *old.entry(offer).or_default() += 0.1 * value;
-            }
-            old.retain(|_, value| value.abs() > 1e-6);
-            norm += old
-                .iter()
-                .map(|(&offer, value)| self.scale(output, offer) * value * value)
-                .sum::<f64>();
+    fn turn(&self, direction: &mut Moves, usage: &Moves) -> f64 {
+        for value in direction.values_mut() {
+            *value *= 0.9;
         }
-        norm
+        for (&key, &value) in usage {
+            *direction.entry(key).or_default() += 0.1 * value;
+        }
+        direction.retain(|_, value| value.abs() > 1e-6);
+        direction.iter().map(|(&key, value)| self.scale(key) * value * value).sum()
     }
 
     /// Parts of a like cost should move alike: the square of the scale of a multiplier.
-    fn scale(&self, output: usize, offer: OfferId) -> f64 {
-        let part = &self.parts[self.place[&offer]];
-        part.best * self.family.quantities[output] as f64 + self.line + 1.0
+    fn scale(&self, (part, user): (u32, u32)) -> f64 {
+        let part = &self.parts[part as usize];
+        part.best * part.users[user as usize].quantity + self.line + 1.0
     }
 
-    fn advance(&mut self, direction: &[BTreeMap<OfferId, f64>], step: f64) {
-        for (output, moves) in direction.iter().enumerate() {
-            let quantity = self.family.quantities[output] as f64;
-            for (&offer, &value) in moves {
-                let least = self.parts[self.place[&offer]].best * quantity;
-                let by = step * self.scale(output, offer) * value;
-                let mu = &mut self.costs[output].one[offer.index()];
-                // Below the lowest price a multiplier only loosens the bound.
-                *mu = (*mu + by).max(least);
-            }
+    fn advance(&mut self, direction: &Moves, step: f64) {
+        for (&key, &value) in direction {
+            let part = &self.parts[key.0 as usize];
+            let user = &part.users[key.1 as usize];
+            // Below the lowest price a multiplier only loosens the bound.
+            let mu = (user.mu + step * self.scale(key) * value).max(part.best * user.quantity);
+            self.set(key.0, key.1, mu);
         }
     }
 }

@@ -40,6 +40,8 @@ pub enum Outcome {
 
 /// Rows up to which an output's designs are listed one by one.
 const MOST_LISTED: usize = 400_000;
+/// Rounds of bound and reduction.
+const MOST_ROUNDS: u32 = 20;
 /// Rows of all outputs up to which the integer program is put to the solver at once.
 const MOST_SOLVED: usize = 40_000;
 
@@ -138,12 +140,11 @@ impl<'s, 'a> Search<'_, 's, 'a> {
     fn prove(&mut self, mut best: Incumbent, mut designs: Vec<Designs<'s, 'a>>) -> Outcome {
         let family = self.family;
         let mut proved = i64::MIN;
-        let mut multipliers: Option<Vec<Vec<f64>>> = None;
+        let mut earlier: Option<Bounder<'_, 's, 'a>> = None;
         let mut rows_before = usize::MAX;
-        for round in 0..8 {
-            let mut bounder =
-                Bounder::new(family, &designs, self.extra_line, multipliers.as_deref());
-            let effort = Effort { steps: if round == 0 { 250 } else { 500 }, patience: 25 };
+        for round in 0..MOST_ROUNDS {
+            let mut bounder = Bounder::new(family, &designs, self.extra_line, earlier.as_ref());
+            let effort = Effort { steps: if round == 0 { 60 } else { 150 }, patience: 20 };
             let stop = || self.watch.stop();
             // The bound is on cost plus the price on lines; a set within `lines_max` pays no more
             // than that price times the most.
@@ -171,8 +172,8 @@ impl<'s, 'a> Search<'_, 's, 'a> {
             }
             let rows: usize = listings.iter().map(Listing::rows).sum();
             designs = listings.into_iter().map(Designs::Listed).collect();
-            multipliers = Some(bound.multipliers);
-            if rows <= 400 || rows as f64 > 0.7 * rows_before as f64 {
+            earlier = Some(bounder);
+            if rows <= 200 || rows as f64 > 0.9 * rows_before as f64 {
                 break;
             }
             rows_before = rows;

@@ -110,8 +110,9 @@ impl Common {
         };
         let plain = frame(None);
         let adjusted = market.adjustments.first().and_then(|a| frame(Some(a.0)));
-        let errors = [&plain, &adjusted]
-            .map(|frame| frame.as_ref().map_or_else(Vec::new, |f| type_errors(market, f)));
+        // Without adjustments nothing asks for the adjusted errors; they are then the plain ones.
+        let errors = [plain.as_ref(), adjusted.as_ref().or(plain.as_ref())]
+            .map(|frame| frame.map_or_else(Vec::new, |f| type_errors(market, f)));
         let (listed, made_only) = (0..market.values.len() as u32)
             .partition(|&v| market.stocked(v).iter().any(|s| !s.made_to_order));
         Self {
