@@ -107,7 +107,8 @@ mod tests {
     fn time_limits_need_a_unit_and_a_sense() {
         assert_eq!(duration("30s"), Ok(Duration::from_secs(30)));
         assert_eq!(duration("1.5 min"), Ok(Duration::from_secs(90)));
-        assert!(duration("1e300 yr").is_ok() || duration("1e300 yr").is_err());
+        // More than a clock can count is no limit, and no panic.
+        assert_eq!(duration("9e9 yr"), Ok(Duration::from_secs_f64(LONGEST)));
         for bad in ["30", "-1 s", "0 s", "5 V", "soon", ""] {
             assert!(duration(bad).is_err(), "{bad}");
         }

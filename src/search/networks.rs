@@ -85,7 +85,8 @@ impl<C: Amount> LeastCosts<C> {
                 market
                     .stocked(value)
                     .iter()
-                    .filter(|s| errors[s.of as usize].usable)
+                    // Without adjustments there are no errors of adjusted elements.
+                    .filter(|s| errors.get(s.of as usize).is_some_and(|errors| errors.usable))
                     .map(|s| costs.of(s.offer, 1))
                     .fold(C::HUGE, smaller)
             })
