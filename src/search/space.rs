@@ -254,27 +254,21 @@ impl<'a> OutputSpace<'a> {
 
     /// Says for every reference voltage how far off R* the slackest frame bears a network.
     fn attach_networks(&mut self, mut frames: Vec<FrameSpace<'a>>) {
-        for index in 0..frames.len() {
-            let (voltage, adjusted) =
-                (frames[index].frame.vref(), frames[index].adjustment.is_some());
-            let most_ppm = self.mismatch_room(&frames[index]);
-            let known = self
-                .nets
-                .iter()
-                .position(|net| net.goal.vref == voltage.value() && net.adjusted == adjusted);
+        for (index, frame) in frames.iter_mut().enumerate() {
+            let (vref, adjusted) = (frame.frame.vref().value(), frame.adjustment.is_some());
+            let most_ppm = self.mismatch_room(frame);
+            let known =
+                self.nets.iter().position(|n| n.goal.vref == vref && n.adjusted == adjusted);
             let at = known.unwrap_or_else(|| {
-                let goal = Goal {
-                    vref: voltage.value(),
-                    target_ohms: voltage.value() / self.output.current.value().value(),
-                    most_ppm,
-                };
+                let target_ohms = vref / self.output.current.value().value();
+                let goal = Goal { vref, target_ohms, most_ppm };
                 self.nets.push(NetSpace { adjusted, goal, frames: Vec::new() });
                 self.nets.len() - 1
             });
             let net = &mut self.nets[at];
             net.goal.most_ppm = net.goal.most_ppm.max(most_ppm);
             net.frames.push(index);
-            frames[index].net = at;
+            frame.net = at;
         }
         self.frames = frames;
     }
