@@ -124,7 +124,7 @@ impl Run {
 
     /// Bad input: code 2, nothing on standard output, no panic.
     #[track_caller]
-    fn is_bad_input(self) -> Self {
+    fn refused(self) -> Self {
         let run = self.exits(2);
         assert_eq!(run.out, "", "{}", run.shown);
         assert!(!run.err.contains("panicked"), "{}", run.shown);
@@ -238,7 +238,7 @@ fn all_faults_of_catalogue_and_request_come_in_one_run() {
     bench.file("faulty.yaml", &REQUEST.replace("current: 1 mA", "current: 1 mV"));
     bench
         .run(&["choose", "faulty.yaml"])
-        .is_bad_input()
+        .refused()
         .says(&["all.yaml:6:9: error: MV25, tempco: ", "all.yaml:19:1: error: QA7", "`biass`"])
         .says(&["broken.yml:", "faulty.yaml:9:28: error: ", "current", "hint: ", "5 errors"]);
 }
@@ -248,21 +248,21 @@ fn bad_records_can_be_left_out_and_the_answer_says_so() {
     let bench = Bench::new();
     let cheaper = "kind: reference\npart: MV26\nprice: 1.00\n";
     bench.file("parts/more.yaml", cheaper);
-    bench.run(&["choose", "request.yaml"]).is_bad_input().says(&["more.yaml:", "MV26"]);
+    bench.run(&["choose", "request.yaml"]).refused().says(&["more.yaml:", "MV26"]);
     let run = bench.run(&["choose", "request.yaml", "--skip-bad-records"]).exits(0);
     let run = run.says(&["1 record left out", "MV26"]);
     assert!(run.out.contains("1 record left out"), "{}", run.out);
     let quiet = bench.run(&["choose", "request.yaml", "--skip-bad-records", "--quiet"]).exits(0);
     assert_eq!(quiet.err, "", "{}", quiet.shown);
-    bench.run(&["check"]).is_bad_input().says(&["more.yaml:", "1 record has errors"]);
+    bench.run(&["check"]).refused().says(&["more.yaml:", "1 record has errors"]);
     bench.run(&["check", "--skip-bad-records"]).exits(0);
 }
 
 #[test]
-fn a_missing_rate_is_bad_input() {
+fn a_missing_rate_refused() {
     let bench = Bench::new();
     bench.file("parts/all.yaml", &PARTS.replace("price: 0.50", "price: 0.50\ncurrency: USD"));
-    bench.run(&["choose", "request.yaml"]).is_bad_input().says(&["all.yaml:", "QA7", "USD"]);
+    bench.run(&["choose", "request.yaml"]).refused().says(&["all.yaml:", "QA7", "USD"]);
 }
 
 #[test]
@@ -283,7 +283,7 @@ fn check_counts_and_doubts_are_no_failure() {
 fn check_with_errors_lists_them_in_the_format_asked_for() {
     let bench = Bench::new();
     bench.file("parts/all.yaml", &PARTS.replace("0.05 %", "0,05 %"));
-    let run = bench.run(&["check", "--format", "json"]).is_bad_input();
+    let run = bench.run(&["check", "--format", "json"]).refused();
     let check: CheckJson = serde_json::from_str(&run.err).unwrap();
     assert_eq!((check.errors, check.left_out), (2, 2));
     let fault = &check.faults[0];
@@ -293,17 +293,17 @@ fn check_with_errors_lists_them_in_the_format_asked_for() {
 #[test]
 fn bad_usage_says_what_to_write() {
     let bench = Bench::new();
-    bench.run(&["choose"]).is_bad_input().says(&["ampthrift choose REQUEST", "--current 1mA"]);
-    bench.run(&["choose", "--current", "1mA"]).is_bad_input().says(&["--supply", "--currency"]);
-    bench.run(&["choose", "nowhere.yaml"]).is_bad_input().says(&["nowhere.yaml"]);
-    bench.run(&["choose", "request.yaml", "--current", "1mA"]).is_bad_input();
-    bench.run(&["choose", "request.yaml", "--threads", "0"]).is_bad_input().says(&["--threads"]);
+    bench.run(&["choose"]).refused().says(&["ampthrift choose REQUEST", "--current 1mA"]);
+    bench.run(&["choose", "--current", "1mA"]).refused().says(&["--supply", "--currency"]);
+    bench.run(&["choose", "nowhere.yaml"]).refused().says(&["nowhere.yaml"]);
+    bench.run(&["choose", "request.yaml", "--current", "1mA"]).refused();
+    bench.run(&["choose", "request.yaml", "--threads", "0"]).refused().says(&["--threads"]);
     bench
         .run(&["choose", "request.yaml", "--time-limit", "30"])
-        .is_bad_input()
+        .refused()
         .says(&["--time-limit", "unit"]);
-    bench.run(&["chose"]).is_bad_input().says(&["choose"]);
-    bench.run(&["choose", "request.yaml", "--format", "xml"]).is_bad_input().says(&["json"]);
+    bench.run(&["chose"]).refused().says(&["choose"]);
+    bench.run(&["choose", "request.yaml", "--format", "xml"]).refused().says(&["json"]);
 }
 
 #[test]
@@ -312,7 +312,7 @@ fn a_missing_catalogue_is_reported_with_the_faults_of_the_request() {
     bench.file("faulty.yaml", &REQUEST.replace("EUR", "[]"));
     fs::remove_dir_all(bench.path().join("parts")).unwrap();
     for skip in [&["choose", "faulty.yaml"][..], &["choose", "faulty.yaml", "--skip-bad-records"]] {
-        bench.run(skip).is_bad_input().says(&["parts", "faulty.yaml", "currency"]);
+        bench.run(skip).refused().says(&["parts", "faulty.yaml", "currency"]);
     }
 }
 

@@ -1,6 +1,6 @@
 //! Arguments, exit codes, one file per command. No rules of the trade.
 //!
-//! To add a command: its file, its line in [`Command`] and its arm in [`Command::run`].
+//! To add a command: its file, its line in `Command` and its arm in `Command::run`.
 
 mod check;
 mod choose;

@@ -4,7 +4,7 @@ use std::sync::mpsc::{Receiver, RecvTimeoutError, Sender, channel};
 use std::thread::{self, JoinHandle};
 use std::time::Duration;
 
-use indicatif::{ProgressBar, ProgressDrawTarget};
+use indicatif::{ProgressBar, ProgressDrawTarget, ProgressStyle};
 
 use crate::answers::Progress;
 
@@ -26,6 +26,8 @@ impl Waiting {
     /// Shows the line after a while.
     pub(super) fn start(currency: String) -> Self {
         let bar = ProgressBar::with_draw_target(None, ProgressDrawTarget::hidden());
+        let style = ProgressStyle::with_template("{spinner} {elapsed} {wide_msg}");
+        bar.set_style(style.unwrap_or_else(|_| ProgressStyle::default_spinner()));
         let (end, ended) = channel();
         let shown = bar.clone();
         let starter = thread::spawn(move || show_later(&shown, &ended));
