@@ -299,7 +299,8 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
         steps(self.family.market.tariff(offer))
             .filter(|step| {
                 step.minimum <= demand
-                    || all.is_none_or(|cost| (step.minimum as i64).saturating_mul(step.each) < cost)
+                    || all
+                        .is_none_or(|cost| (step.minimum as i64).saturating_mul(step.each) <= cost)
             })
             .collect()
     }
