@@ -33,9 +33,8 @@ pub fn tidy(family: &Family<'_, '_>, mut picks: Vec<Pick>) -> Vec<Pick> {
                     new.iter().filter(|(o, _)| !others.contains_key(o)).count() as u64 <= left
                 })
             };
-            if let Some(better) = family.spaces[output].best_at(&costs, cost, &admit)
-                && better != picks[output]
-            {
+            let better = family.spaces[output].best_at(&costs, cost, picks[output], &admit);
+            if better != picks[output] {
                 picks[output] = better;
                 changed = true;
             }

@@ -115,9 +115,8 @@ impl NetVisitor<i64> for MostAccurate<'_, '_> {
         Some(0)
     }
 
-    fn wants(&self, combo: &Combo) -> bool {
-        // Without an adjustment the mismatch alone is part of the total.
-        self.adjusted || self.best.is_none_or(|(best, _)| combo.mismatch < best)
+    fn most_total(&self) -> f64 {
+        self.best.map_or(f64::INFINITY, |(best, _)| best)
     }
 
     fn take(&mut self, combo: &Combo, choice: &NetChoice<i64>) {

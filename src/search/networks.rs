@@ -30,9 +30,9 @@ pub struct NetChoice<C> {
 pub trait NetVisitor<C> {
     /// The largest cost of so many elements that is of interest now; `None` when no network is.
     fn ceiling(&self, count: u32) -> Option<C>;
-    /// Whether a combination is of interest at all.
-    fn wants(&self, _combo: &Combo) -> bool {
-        true
+    /// The largest total of interest, in ppm, where it is below the output's own.
+    fn most_total(&self) -> f64 {
+        f64::INFINITY
     }
     /// Looks at one network.
     fn take(&mut self, combo: &Combo, choice: &NetChoice<C>);
@@ -320,20 +320,23 @@ impl<C: Amount> Walker<'_, '_, C> {
             return;
         }
         let combo = self.space.combination(self.net, self.connection, values);
-        if combo.mismatch > self.net.goal.most_ppm || !visitor.wants(&combo) {
+        if combo.mismatch > self.net.goal.most_ppm {
             return;
         }
+        let systematic = if self.net.adjusted { 0.0 } else { combo.mismatch };
+        let room = self.space.error_room(self.net, systematic, visitor.most_total());
         for (position, slot) in combo.slots().iter().enumerate() {
             let most = ceiling - (sum - least[position]);
-            if !self.fill(position, slot, &combo, most) {
+            if !self.fill(position, slot, &combo, most, room) {
                 return;
             }
         }
         self.choose(&combo, ceiling, visitor);
     }
 
-    /// Lists the types that can fill a slot; false when there is none.
-    fn fill(&mut self, position: usize, slot: &Slot, combo: &Combo, most: C) -> bool {
+    /// Lists the types that can fill a slot within a cost and an error; false when there is none.
+    /// (No network has a smaller error than one of its elements.)
+    fn fill(&mut self, position: usize, slot: &Slot, combo: &Combo, most: C, room: f64) -> bool {
         let repeats = combo.slots().iter().filter(|s| s.value == slot.value).count() as u32;
         let layers = if combo.count == 1 || (repeats == 1 && self.space.method == Budget::WorstCase)
         {
@@ -346,12 +349,16 @@ impl<C: Amount> Walker<'_, '_, C> {
         for stocked in self.space.market.stocked(slot.value) {
             let of = &self.errors[stocked.of as usize];
             let cost = self.costs.of(stocked.offer, 1);
-            if cost <= most && cost < C::HUGE && of.stands(slot) {
+            if cost > most || cost >= C::HUGE || !of.stands(slot) {
+                continue;
+            }
+            let error = of.random_of(slot, self.space.method);
+            if error <= room {
                 list.push(Entry {
                     of: stocked.of,
                     offer: stocked.offer,
                     made_to_order: stocked.made_to_order,
-                    error: of.random_of(slot, self.space.method),
+                    error,
                     statics: of.statics_of(slot),
                     cost,
                 });

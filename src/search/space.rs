@@ -59,6 +59,10 @@ pub struct NetSpace {
     pub goal: Goal,
     /// Frames that use these networks.
     pub frames: Vec<usize>,
+    /// Least systematic error of a frame, in ppm.
+    own_systematic: f64,
+    /// Least error of a frame with its best parts, in ppm or ppm².
+    besides: f64,
 }
 
 /// All designs of one output.
@@ -262,11 +266,21 @@ impl<'a> OutputSpace<'a> {
             let at = known.unwrap_or_else(|| {
                 let target_ohms = vref / self.output.current.value().value();
                 let goal = Goal { vref, target_ohms, most_ppm };
-                self.nets.push(NetSpace { adjusted, goal, frames: Vec::new() });
+                self.nets.push(NetSpace {
+                    adjusted,
+                    goal,
+                    frames: Vec::new(),
+                    own_systematic: f64::INFINITY,
+                    besides: f64::INFINITY,
+                });
                 self.nets.len() - 1
             });
             let net = &mut self.nets[at];
             net.goal.most_ppm = net.goal.most_ppm.max(most_ppm);
+            net.own_systematic = net.own_systematic.min(frame.own.systematic);
+            let parts =
+                least(&frame.references, |p| p.error) + least(&frame.amplifiers, |p| p.error);
+            net.besides = net.besides.min(frame.own.random + parts);
             net.frames.push(index);
             frame.net = at;
         }
@@ -293,6 +307,23 @@ impl<'a> OutputSpace<'a> {
         self.combination(net, connection, &values[..offers.len()])
     }
 
+    /// The largest error that a network of this systematic error can have in any frame, beside
+    /// the best parts, for a total of at most `most_ppm` or the output's own; below zero when none
+    /// can.
+    #[must_use]
+    pub fn error_room(&self, net: &NetSpace, systematic: f64, most_ppm: f64) -> f64 {
+        let most_ppm = self.most_ppm.min(most_ppm);
+        let room = match self.method {
+            Budget::WorstCase => most_ppm - systematic - net.besides,
+            Budget::Rss | Budget::Gum { .. } => {
+                let linear = most_ppm - systematic - net.own_systematic;
+                if linear < 0.0 { -1.0 } else { linear * linear - net.besides }
+            }
+        };
+        // A hair for rounding: this leaves out only what cannot pass.
+        room + 1e-12 * (room.abs() + net.besides)
+    }
+
     /// The largest mismatch that can pass in a frame beside its best parts, in ppm.
     fn mismatch_room(&self, frame: &FrameSpace<'_>) -> f64 {
         let least = |parts: &[PartIn], of: fn(&PartIn) -> f64| {
@@ -311,6 +342,10 @@ impl<'a> OutputSpace<'a> {
             }
         }
     }
+}
+
+fn least(parts: &[PartIn], of: fn(&PartIn) -> f64) -> f64 {
+    parts.iter().map(of).fold(f64::INFINITY, f64::min)
 }
 
 fn lift_choices(market: &Market<'_>) -> Vec<Option<(u32, u32)>> {

@@ -19,15 +19,17 @@ const EQUAL: f64 = 1e-9;
 type FittingPair = (f64, f64, u32, u32);
 
 impl OutputSpace<'_> {
-    /// Of all designs that cost exactly `cost` and are admitted, the one that the rule names.
+    /// Of all designs that cost exactly `cost`, as this one does, and are admitted, the one that
+    /// the rule names.
     #[must_use]
     pub fn best_at(
         &self,
         costs: &Costs<i64>,
         cost: i64,
+        known: Pick,
         admit: &dyn Fn(&Pick) -> bool,
-    ) -> Option<Pick> {
-        let mut ties = Ties { least: f64::INFINITY, found: Vec::new() };
+    ) -> Pick {
+        let mut ties = Ties { least: self.total_of(&known), found: Vec::new() };
         let least = self.least_costs(costs);
         for net in &self.nets {
             let mut search = TieSearch::new(self, net, costs, cost, &mut ties, admit);
@@ -41,7 +43,7 @@ impl OutputSpace<'_> {
         let mut named: Vec<(Vec<String>, Pick)> =
             ties.found.iter().map(|(_, pick)| (self.tie_codes(pick), *pick)).collect();
         named.sort_by(|a, b| a.0.cmp(&b.0).then_with(|| self.by_build(&a.1, &b.1)));
-        named.first().map(|(_, pick)| *pick)
+        named.first().map_or(known, |(_, pick)| *pick)
     }
 
     /// The order codes in the order of the rule: reference, amplifier, elements sorted, lift,
@@ -208,6 +210,10 @@ impl NetVisitor<i64> for TieSearch<'_, '_, '_> {
         let least = self.frames.iter().map(|f| f.least).min()?;
         let left = self.cost - least - self.component * i64::from(count);
         (left >= 0).then_some(left)
+    }
+
+    fn most_total(&self) -> f64 {
+        self.ties.least * (1.0 + 2.0 * EQUAL)
     }
 
     fn take(&mut self, combo: &Combo, choice: &NetChoice<i64>) {
