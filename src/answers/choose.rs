@@ -5,12 +5,12 @@ use std::time::{Duration, Instant};
 
 use rayon::prelude::*;
 
-use crate::catalog::{Catalog, Fault, Severity};
+use crate::catalog::{Catalog, Fault};
 use crate::circuit::{Evaluation, cautions, evaluate};
 use crate::purchase::{self, Family, Outcome, Watch, bill, tidy};
 use crate::quantity::Money;
 use crate::request::{Request, Unstated};
-use crate::search::{Amount, Common, Costs, Market, MarketError, OutputSpace, Pick};
+use crate::search::{Amount, Common, Costs, Market, OutputSpace, Pick, TooDear, price_faults};
 
 use super::choice::{Choice, JointReason, OutputAnswer, Status, Verdict};
 use super::design::{chosen, design_of};
@@ -46,6 +46,9 @@ pub enum ChooseError {
     /// Catalogue and request don't go together.
     #[error("the catalogue and the request do not go together")]
     Input(Vec<Fault>),
+    /// Prices times quantities are beyond exact counting.
+    #[error("prices and quantities are too large to be counted exactly")]
+    TooDear,
     /// Nothing was found before the search was stopped, and nothing is proved.
     #[error("stopped before any set of designs was found; whether there is one is not known")]
     Stopped,
@@ -104,7 +107,11 @@ fn choose_here(
     let deadline = options.time_limit.map(|limit| Instant::now() + limit);
     let watch = Watcher { options, deadline };
     watch.note("designs", None, None);
-    let market = Market::new(catalog, request).map_err(market_fault)?;
+    let faults = price_faults(catalog, request);
+    if !faults.is_empty() {
+        return Err(ChooseError::Input(faults));
+    }
+    let market = Market::new(catalog, request).map_err(|TooDear| ChooseError::TooDear)?;
     let common = Common::new(&market);
     let spaces: Vec<OutputSpace<'_>> = request
         .outputs
@@ -251,24 +258,4 @@ fn audited(space: &OutputSpace<'_>, pick: &Pick) -> Result<Worked, ChooseError> 
 
 fn differs(what: &str) -> ChooseError {
     ChooseError::Internal(format!("{what} came out otherwise when it was computed again"))
-}
-
-fn market_fault(error: MarketError) -> ChooseError {
-    match error {
-        MarketError::NoRate { currency, supply } => {
-            let record = match &supply.grade {
-                Some(grade) => format!("{} {grade}", supply.part),
-                None => supply.part.clone(),
-            };
-            ChooseError::Input(vec![Fault {
-                place: supply.place.clone(),
-                severity: Severity::Error,
-                record: Some(record),
-                field: Some("currency".to_owned()),
-                message: format!("priced in {currency}, for which the request has no rate"),
-                hint: Some(format!("add to the request: exchange: {{{currency}: 1.00}}")),
-            }])
-        }
-        MarketError::TooDear => ChooseError::Input(Vec::new()),
-    }
 }

@@ -63,7 +63,7 @@ fn solve(inputs: &Inputs, common: &Common, world: &World<'_>) -> Result<Choice, 
 fn failure(error: ChooseError) -> Failure {
     let message = error.to_string();
     match error {
-        ChooseError::Input(faults) if faults.is_empty() => Failure::Usage {
+        ChooseError::TooDear => Failure::Usage {
             message,
             hint: "Look for prices or quantities that are far too large.".to_owned(),
         },

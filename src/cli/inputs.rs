@@ -9,6 +9,7 @@ use super::flags::RequestFlags;
 use super::world::World;
 use crate::catalog::{Catalog, Fault, Loaded};
 use crate::request::{self, Request};
+use crate::search::price_faults;
 
 /// A sound catalogue and request.
 #[derive(Debug)]
@@ -37,6 +38,9 @@ pub(super) fn read(
     };
     let loaded = common.load_catalog();
     let mut faults: Vec<Fault> = common.stopping(&loaded);
+    if let Ok(request) = &request {
+        faults.extend(price_faults(&loaded.catalog, request));
+    }
     match request {
         Ok(request) if faults.is_empty() => Ok(Inputs {
             request,

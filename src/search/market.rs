@@ -4,7 +4,8 @@
 use std::collections::BTreeMap;
 
 use crate::catalog::{
-    Adjustment, Amplifier, Catalog, Kind, Lift, Reference, ResistorType, Supply, Values,
+    Adjustment, Amplifier, Catalog, Fault, Kind, Lift, Reference, ResistorType, Severity, Supply,
+    Values,
 };
 use crate::quantity::{Decimal, Exact, Money, Ohms};
 use crate::request::Request;
@@ -52,29 +53,39 @@ pub struct Stocked {
 /// How many offers of a kind a rule removed.
 pub type RuleRemovals = BTreeMap<(Kind, &'static str), u64>;
 
-/// Why a market cannot be set up.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub enum MarketError {
-    /// A price is in a currency for which the request gives no rate.
-    NoRate {
-        /// The currency.
-        currency: String,
-        /// A part priced in it.
-        supply: Box<SupplyName>,
-    },
-    /// Quantities times prices exceed what is counted exactly.
-    TooDear,
+/// Prices and quantities that are too large to be counted exactly.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct TooDear;
+
+/// Every price of a catalogue, used or not, in a currency for which the request has no rate.
+#[must_use]
+pub fn price_faults(catalog: &Catalog, request: &Request) -> Vec<Fault> {
+    supplies(catalog)
+        .filter_map(|supply| {
+            let currency = supply.currency.as_ref()?;
+            let known = *currency == request.currency || request.exchange.contains_key(currency);
+            (!known).then(|| Fault {
+                place: supply.place.clone(),
+                severity: Severity::Error,
+                record: Some(match &supply.grade {
+                    Some(grade) => format!("{} grade {grade}", supply.part),
+                    None => supply.part.clone(),
+                }),
+                field: Some("currency".to_owned()),
+                message: format!("priced in {currency}, for which the request has no rate"),
+                hint: Some(format!("add to the request: exchange: {{{currency}: 1.00}}")),
+            })
+        })
+        .collect()
 }
 
-/// Enough of a record to name it in a message.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct SupplyName {
-    /// The `part` field.
-    pub part: String,
-    /// The grade.
-    pub grade: Option<String>,
-    /// Where it stands.
-    pub place: crate::catalog::Place,
+fn supplies(catalog: &Catalog) -> impl Iterator<Item = &Supply> {
+    let parts = catalog.references.iter().map(|p| &p.supply);
+    parts
+        .chain(catalog.amplifiers.iter().map(|p| &p.supply))
+        .chain(catalog.resistors.iter().map(|p| &p.supply))
+        .chain(catalog.lifts.iter().map(|p| &p.supply))
+        .chain(catalog.adjustments.iter().map(|p| &p.supply))
 }
 
 /// What the rules leave, as flat lists.
@@ -109,13 +120,13 @@ pub struct Market<'a> {
 }
 
 impl<'a> Market<'a> {
-    /// Applies the rules of a request to a catalogue.
+    /// Applies the rules of a request to a catalogue whose prices all have a rate.
     ///
     /// # Errors
-    /// A price without an exchange rate, or amounts beyond exact counting.
-    pub fn new(catalog: &'a Catalog, request: &'a Request) -> Result<Self, MarketError> {
+    /// Amounts beyond exact counting.
+    pub fn new(catalog: &'a Catalog, request: &'a Request) -> Result<Self, TooDear> {
         let mut book = Rulebook::new(catalog, request);
-        let mut tariffs = Tariffs::new(catalog, request)?;
+        let mut tariffs = Tariffs { request, list: Vec::new() };
 
         let references =
             book.keep(Kind::Reference, &catalog.references, |r| (r.order_code.as_str(), &r.supply));
@@ -145,7 +156,7 @@ impl<'a> Market<'a> {
                 let tariff = tariffs.convert(&adjustment.supply)?;
                 Ok((adjustment, tariff.breaks[0].1))
             })
-            .collect::<Result<Vec<_>, MarketError>>()?;
+            .collect::<Result<Vec<_>, TooDear>>()?;
 
         let types: Vec<&ResistorType> =
             catalog.resistors.iter().filter(|of| book.rule_on_type(of) == Ruling::Kept).collect();
@@ -282,7 +293,7 @@ impl<'a> Market<'a> {
     }
 
     /// Keeps every sum of amounts that a search can form far inside 64 bits.
-    fn check_amounts(&self) -> Result<(), MarketError> {
+    fn check_amounts(&self) -> Result<(), TooDear> {
         const MOST: i128 = i64::MAX as i128 / 64;
         let dearest = |offers: &mut dyn Iterator<Item = &Tariff>| {
             offers
@@ -297,7 +308,8 @@ impl<'a> Market<'a> {
         let built: i128 = self.request.outputs.iter().map(|o| i128::from(o.quantity)).sum();
         let purchase = &self.request.purchase;
         let steps = self.adjustments.iter().map(|a| i128::from(a.1)).max().unwrap_or(0);
-        let parts_per_output = 16;
+        let diodes = self.lifts.iter().map(|l| l.in_series_max).max().unwrap_or(0);
+        let parts_per_output = 5 + i128::from(diodes);
         let total = each
             .saturating_mul(built.saturating_mul(parts_per_output).saturating_add(buy))
             .saturating_add(
@@ -310,7 +322,7 @@ impl<'a> Market<'a> {
                 purchase.placement_cost.micros().saturating_mul(built * parts_per_output),
             )
             .saturating_add(steps.saturating_mul(built));
-        if total > MOST { Err(MarketError::TooDear) } else { Ok(()) }
+        if total > MOST { Err(TooDear) } else { Ok(()) }
     }
 }
 
@@ -339,55 +351,19 @@ struct Tariffs<'a> {
     list: Vec<Tariff>,
 }
 
-impl<'a> Tariffs<'a> {
-    /// Checks first that every price of the catalogue has a rate, used or not.
-    fn new(catalog: &Catalog, request: &'a Request) -> Result<Self, MarketError> {
-        let tariffs = Self { request, list: Vec::new() };
-        let all = catalog
-            .references
-            .iter()
-            .map(|p| &p.supply)
-            .chain(catalog.amplifiers.iter().map(|p| &p.supply))
-            .chain(catalog.resistors.iter().map(|p| &p.supply))
-            .chain(catalog.lifts.iter().map(|p| &p.supply))
-            .chain(catalog.adjustments.iter().map(|p| &p.supply));
-        for supply in all {
-            tariffs.rate(supply)?;
-        }
-        Ok(tariffs)
-    }
-
-    fn rate(
-        &self,
-        supply: &Supply,
-    ) -> Result<Option<&'a crate::quantity::ExchangeRate>, MarketError> {
-        match &supply.currency {
-            Some(currency) if *currency != self.request.currency => {
-                self.request.exchange.get(currency).map(Some).ok_or_else(|| MarketError::NoRate {
-                    currency: currency.clone(),
-                    supply: Box::new(SupplyName {
-                        part: supply.part.clone(),
-                        grade: supply.grade.clone(),
-                        place: supply.place.clone(),
-                    }),
-                })
-            }
-            _ => Ok(None),
-        }
-    }
-
-    fn convert(&self, supply: &Supply) -> Result<Tariff, MarketError> {
-        let rate = self.rate(supply)?;
+impl Tariffs<'_> {
+    fn convert(&self, supply: &Supply) -> Result<Tariff, TooDear> {
+        let rate = supply.currency.as_ref().and_then(|c| self.request.exchange.get(c));
         let in_micros = |each: Money| {
             let each = rate.map_or(each, |rate| rate.convert(each));
-            i64::try_from(each.micros()).map_err(|_| MarketError::TooDear)
+            i64::try_from(each.micros()).map_err(|_| TooDear)
         };
         let breaks = supply
             .price
             .breaks()
             .iter()
             .map(|step| Ok((step.from, in_micros(step.each)?)))
-            .collect::<Result<Vec<_>, MarketError>>()?;
+            .collect::<Result<Vec<_>, TooDear>>()?;
         Ok(Tariff {
             breaks,
             minimum: supply.order_minimum,
@@ -396,7 +372,7 @@ impl<'a> Tariffs<'a> {
         })
     }
 
-    fn add(&mut self, supply: &Supply) -> Result<u32, MarketError> {
+    fn add(&mut self, supply: &Supply) -> Result<u32, TooDear> {
         let tariff = self.convert(supply)?;
         self.list.push(tariff);
         Ok(self.list.len() as u32 - 1)

@@ -18,7 +18,7 @@ mod ties;
 pub use combos::{Combo, Goal, Slot};
 pub use costs::{Amount, Costs};
 pub use listing::{ListedFrame, ListedNetwork, ListedPair, Listing};
-pub use market::{Market, MarketError, OfferId, RuleRemovals, Stocked, SupplyName, Tariff};
+pub use market::{Market, OfferId, RuleRemovals, Stocked, Tariff, TooDear, price_faults};
 pub use networks::ValueTable;
 pub use oracle::{Pick, PickedNetwork};
 pub use space::{Common, FrameSpace, NetSpace, OutputSpace, PartIn};
