@@ -189,6 +189,12 @@ struct Answer {
 impl Answer {
     fn take(&mut self, family: &Family<'_, '_>, outcome: Outcome) -> Result<(), ChooseError> {
         let market = family.market;
+        let too_many_lines = |needed| JointReason {
+            rule: "purchase.lines_max",
+            order_code: None,
+            allowed: family.terms.lines_max.unwrap_or(0),
+            needed,
+        };
         match outcome {
             Outcome::Found { best, bound } => {
                 let picks = tidy(family, best.picks);
@@ -212,13 +218,9 @@ impl Answer {
                     .collect::<Result<_, _>>()?;
                 self.purchase = Some(bill);
             }
-            Outcome::TooManyLines(needed) => self.joint_reasons.push(JointReason {
-                rule: "purchase.lines_max",
-                order_code: None,
-                allowed: family.terms.lines_max.unwrap_or(0),
-                needed,
-            }),
-            Outcome::OutOfStock(short) => {
+            Outcome::TooManyLines(needed) => self.joint_reasons.push(too_many_lines(needed)),
+            Outcome::OutOfStock { short, lines } => {
+                self.joint_reasons.extend(lines.map(too_many_lines));
                 self.joint_reasons.extend(short.into_iter().map(|(offer, needed)| JointReason {
                     rule: "rules.in_stock",
                     order_code: Some(market.order_code(offer)),

@@ -271,10 +271,10 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
                 needed += family.quantities[output] as f64 / whole * take;
                 *takes.entry(output).or_default() += take;
             }
-            if self.aim == Aim::Shortage {
-                let short = self.variables.add(variable().min(0.0).max(1.0));
+            if let (Aim::Shortage, Some(stock)) = (self.aim, tariff.most) {
+                let short = self.variables.add(variable().min(0.0).max(most / whole));
                 self.objective += whole * short;
-                needed -= short;
+                self.constraints.push((bought.clone() - short).leq(stock as f64 / whole));
             }
             self.constraints.push((needed - bought.clone()).leq(0.0));
             // Nothing is bought of a step that isn't chosen, and its minimum of one that is.
@@ -288,10 +288,14 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
         }
     }
 
-    /// The steps of a part that can pay: one that starts beyond all demand must cost less than
-    /// the demand itself.
+    /// The steps of a part that can pay: one that starts beyond all demand must not cost more than
+    /// the demand itself. Where a shortage is counted any number can be bought, at no price.
     fn useful_steps(&self, offer: OfferId, demand: u64) -> Vec<Step> {
-        if !self.family.terms.priced && self.aim == Aim::Cost {
+        if self.aim == Aim::Shortage {
+            let minimum = self.family.market.tariff(offer).minimum;
+            return vec![Step { minimum, each: 0, most: None }];
+        }
+        if !self.family.terms.priced {
             let tariff = self.family.market.tariff(offer);
             return vec![Step { minimum: tariff.minimum, each: 0, most: tariff.most }];
         }

@@ -2,7 +2,7 @@
 
 use std::time::{Duration, Instant};
 
-use crate::search::{Amount, Listing, OfferId, Pick};
+use crate::search::{Amount, Costs, Listing, OfferId, Pick};
 
 use super::bound::{Bound, Bounder, Designs, Effort};
 use super::family::{Demand, Family, Terms};
@@ -32,8 +32,15 @@ pub enum Outcome {
     },
     /// Proved: no set keeps `lines_max`; the fewest lines that any set has.
     TooManyLines(u64),
-    /// Proved: no set can be bought from stock; what the least short set lacks.
-    OutOfStock(Vec<(OfferId, u64)>),
+    /// Proved: no set can be bought from stock. Of the set that is short by the fewest units: what
+    /// is short, with the fewest units that would do; and the fewest lines that any set has, where
+    /// no set keeps `lines_max` whatever is in stock.
+    OutOfStock {
+        /// Offers of which there is too little, with the stock that would do.
+        short: Vec<(OfferId, u64)>,
+        /// The fewest lines.
+        lines: Option<u64>,
+    },
     /// Stopped before any set was found.
     Open,
 }
@@ -284,62 +291,97 @@ impl<'s, 'a> Search<'_, 's, 'a> {
             terms: Terms { line: 1, placement: 0, lines_max: None, priced: false },
         };
         let mut search = Search { family: &free, watch: self.watch, unit: 1, extra_line: 0 };
-        if let Some(first) = search.first_set(&designs) {
-            let (fewest, bound) = match search.prove(first, designs) {
-                Outcome::Found { best, bound } => (best, bound),
-                _ => return Outcome::Open,
-            };
-            let most = self.family.terms.lines_max.map_or(i64::MAX, |m| m as i64);
-            if fewest.total <= most {
-                // There is a set after all: go on from it.
-                return match self.family.total(&fewest.picks) {
-                    Some(total) => {
-                        let best = Incumbent { total, picks: fewest.picks };
-                        let all = self.family.spaces.iter().map(|s| Designs::All(s)).collect();
-                        let extra_line = self.family.terms.line.max(self.unit);
-                        Search { extra_line, ..*self }.prove(best, all)
-                    }
-                    None => Outcome::Open,
-                };
-            }
-            return if bound > most {
-                Outcome::TooManyLines(bound.max(0) as u64)
-            } else {
-                Outcome::Open
-            };
-        }
-        self.shortage(&designs)
-    }
-
-    /// The set that lacks the fewest units, by the integer program over every design.
-    fn shortage(&self, designs: &[Designs<'s, 'a>]) -> Outcome {
-        let mut listings = Vec::new();
-        for of in designs {
-            let space = of.space();
-            let costs = crate::search::Costs::proportional(
-                self.family.market,
-                vec![0i64; self.family.market.offers()],
-                0,
-                vec![0; self.family.market.adjustments.len()],
-            );
-            match space.listing(&costs, i64::HUGE, MOST_SOLVED) {
-                Some(listing) => listings.push(listing),
-                None => return Outcome::Open,
-            }
-        }
-        let model = ChainModel::new(self.family, &listings, Aim::Shortage);
-        let Ending::Optimal(values) = solve_program(&model.program(), self.time_left()) else {
+        let first = match search.first_set(&designs) {
+            Some(first) => first,
+            None => match search.least_short(None) {
+                LeastShort::Set(picks, short) if short.is_empty() => match free.total(&picks) {
+                    Some(total) => Incumbent { total, picks },
+                    None => return Outcome::Open,
+                },
+                LeastShort::Set(_, short) => return self.out_of_stock(short),
+                LeastShort::TooManyLines | LeastShort::Unknown => return Outcome::Open,
+            },
+        };
+        let Outcome::Found { best: fewest, bound } = search.prove(first, designs) else {
             return Outcome::Open;
         };
-        let Some(picks) = model.picks(&values) else { return Outcome::Open };
-        let some: Vec<Option<Pick>> = picks.into_iter().map(Some).collect();
-        let demand: Demand = self.family.demand(&some, None);
-        let short: Vec<(OfferId, u64)> = demand
-            .into_iter()
-            .filter(|&(offer, needed)| self.family.buy(offer, needed).is_none())
-            .collect();
-        if short.is_empty() { Outcome::Open } else { Outcome::OutOfStock(short) }
+        let most = self.family.terms.lines_max.map_or(i64::MAX, |m| m as i64);
+        if fewest.total <= most {
+            // There is a set after all: go on from it.
+            return match self.family.total(&fewest.picks) {
+                Some(total) => {
+                    let best = Incumbent { total, picks: fewest.picks };
+                    let all = self.family.spaces.iter().map(|s| Designs::All(s)).collect();
+                    let extra_line = self.family.terms.line.max(self.unit);
+                    Search { extra_line, ..*self }.prove(best, all)
+                }
+                None => Outcome::Open,
+            };
+        }
+        if bound > most { Outcome::TooManyLines(bound.max(0) as u64) } else { Outcome::Open }
     }
+
+    /// No set can be bought: `short` is what the least short one lacks, whatever its lines. What
+    /// is reported must do together, so with `lines_max` the least short set that keeps it counts,
+    /// or where none does, the least short of those with the fewest lines.
+    fn out_of_stock(&self, short: Vec<(OfferId, u64)>) -> Outcome {
+        let Some(lines_max) = self.family.terms.lines_max else {
+            return Outcome::OutOfStock { short, lines: None };
+        };
+        let mut most = lines_max;
+        loop {
+            match self.least_short(Some(most)) {
+                LeastShort::Set(_, short) => {
+                    let lines = (most > lines_max).then_some(most);
+                    return Outcome::OutOfStock { short, lines };
+                }
+                LeastShort::TooManyLines => most += 1,
+                LeastShort::Unknown => return Outcome::Open,
+            }
+        }
+    }
+
+    /// The set that stock is short of by the fewest units, by the integer program over every
+    /// design.
+    fn least_short(&self, lines_max: Option<u64>) -> LeastShort {
+        let family = Family {
+            market: self.family.market,
+            spaces: self.family.spaces.clone(),
+            quantities: self.family.quantities.clone(),
+            terms: Terms { lines_max, ..self.family.terms },
+        };
+        let market = family.market;
+        let steps = vec![0; market.adjustments.len()];
+        let free = Costs::proportional(market, vec![0i64; market.offers()], 0, steps);
+        let listings: Option<Vec<_>> =
+            family.spaces.iter().map(|s| s.listing(&free, i64::HUGE, MOST_SOLVED)).collect();
+        let Some(listings) = listings else { return LeastShort::Unknown };
+        let model = ChainModel::new(&family, &listings, Aim::Shortage);
+        let values = match solve_program(&model.program(), self.time_left()) {
+            Ending::Optimal(values) => values,
+            Ending::Infeasible => return LeastShort::TooManyLines,
+            Ending::Stopped { .. } | Ending::Trouble(_) => return LeastShort::Unknown,
+        };
+        let Some(picks) = model.picks(&values) else { return LeastShort::Unknown };
+        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
+        let short = family
+            .demand(&some, None)
+            .into_iter()
+            .filter(|&(offer, needed)| family.buy(offer, needed).is_none())
+            .map(|(offer, needed)| (offer, market.tariff(offer).least_order(needed)))
+            .collect();
+        LeastShort::Set(picks, short)
+    }
+}
+
+/// What stock lacks at least.
+enum LeastShort {
+    /// A set, and the offers of which there is too little with the stock that would do.
+    Set(Vec<Pick>, Vec<(OfferId, u64)>),
+    /// No set has so few lines.
+    TooManyLines,
+    /// Not found out.
+    Unknown,
 }
 
 /// The largest amount of which every total is a multiple.

@@ -39,6 +39,14 @@ pub struct Tariff {
     pub most: Option<u64>,
 }
 
+impl Tariff {
+    /// The fewest units that can be ordered to have `needed`.
+    #[must_use]
+    pub fn least_order(&self, needed: u64) -> u64 {
+        needed.max(self.minimum).div_ceil(self.multiple).saturating_mul(self.multiple)
+    }
+}
+
 /// One resistor value on offer.
 #[derive(Clone, Copy, Debug)]
 pub struct Stocked {
