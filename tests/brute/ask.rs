@@ -70,7 +70,7 @@ pub fn case(seed: u64) -> (Catalog, Request) {
         let catalog = maker.catalog();
         let mut request = request(&mut maker, &catalog);
         let fits = set_targets(&mut maker, &catalog, &mut request);
-        if fits || maker.dice.chance(5) {
+        if fits || maker.dice.chance(2) {
             return (catalog, request);
         }
         throw += 1;
@@ -81,7 +81,7 @@ fn outputs(maker: &mut Maker) -> Vec<Output> {
     let mut all = Vec::new();
     for (at, current) in maker.currents.clone().into_iter().enumerate() {
         let dice = &mut maker.dice;
-        let low = dice.of(&[0.0, 0.0, 0.2, 0.5, 1.0]);
+        let low = dice.of(&[0.0, 0.0, 0.0, 0.2, 0.5, 1.0]);
         let high = low + dice.of(&[0.0, 0.5, 1.0, 4.0]);
         let load = if dice.chance(30) {
             let ohms = |volts: f64| {
@@ -109,8 +109,13 @@ fn conditions(maker: &mut Maker, outputs: &[Output]) -> Conditions {
     let low = dice.of(&[9.0, 12.0, 14.5, 15.0]);
     let high = low + dice.of(&[0.0, 1.0, 2.0]);
     all.supply = volts(low, high);
-    all.negative_rail =
-        dice.of(&[volts(0.0, 0.0), volts(0.0, 0.0), volts(-5.0, -5.0), volts(-5.5, -4.5)]);
+    all.negative_rail = dice.of(&[
+        volts(0.0, 0.0),
+        volts(0.0, 0.0),
+        volts(0.0, 0.0),
+        volts(-5.0, -5.0),
+        volts(-5.5, -4.5),
+    ]);
     all.ambient = dice.of(&[
         celsius(25.0, 25.0),
         celsius(0.0, 40.0),

@@ -231,3 +231,86 @@ pub fn improvement(
     }
     None
 }
+
+/// A figure of the parts of some designs.
+type Measure<'f> = &'f dyn Fn(&[(usize, u64)]) -> Option<u64>;
+
+/// The least measure of any set of designs, one an output. The measure of the parts of some
+/// designs must never be above that of more designs; `None` stands for a set that is not allowed.
+/// The outer `None`: too many sets to go through.
+fn least(
+    shelf: &Shelf<'_>,
+    book: &Book<'_>,
+    outputs: &[(u64, Vec<Passing>)],
+    measure: Measure<'_>,
+) -> Option<Option<u64>> {
+    let options: Vec<Vec<Usage>> = outputs
+        .iter()
+        .map(|(quantity, designs)| {
+            let all = designs.iter().map(|design| {
+                let usage = book.usage(shelf, design.pick, *quantity);
+                Usage { fixed: 0, ..usage }
+            });
+            let mut all: Vec<Usage> = all.collect::<BTreeSet<_>>().into_iter().collect();
+            all.sort_by_key(|usage| measure(&usage.parts));
+            all
+        })
+        .collect();
+    let mut best = None;
+    let mut nodes = 0;
+    descend(&options, &mut Vec::new(), measure, &mut best, &mut nodes);
+    (nodes <= NODES).then_some(best)
+}
+
+fn descend<'u>(
+    options: &'u [Vec<Usage>],
+    chosen: &mut Vec<&'u Usage>,
+    measure: Measure<'_>,
+    best: &mut Option<u64>,
+    nodes: &mut u64,
+) {
+    *nodes += 1;
+    if *nodes > NODES {
+        return;
+    }
+    let Some(so_far) = measure(&Book::together(chosen)) else { return };
+    if best.is_some_and(|best| so_far >= best) {
+        return;
+    }
+    let Some(next) = options.get(chosen.len()) else {
+        *best = Some(so_far);
+        return;
+    };
+    for usage in next {
+        chosen.push(usage);
+        descend(options, chosen, measure, best, nodes);
+        chosen.pop();
+    }
+}
+
+/// The fewest order lines with which every output gets a design, bought from stock where that is
+/// asked for.
+pub fn least_lines(
+    shelf: &Shelf<'_>,
+    book: &Book<'_>,
+    outputs: &[(u64, Vec<Passing>)],
+    from_stock: bool,
+) -> Option<Option<u64>> {
+    least(shelf, book, outputs, &|parts| {
+        let had = parts.iter().all(|&(offer, needed)| book.buy(offer, needed).is_some());
+        (had || !from_stock).then_some(parts.len() as u64)
+    })
+}
+
+/// The fewest units that stock is short of with so many lines.
+pub fn least_shortage(
+    shelf: &Shelf<'_>,
+    book: &Book<'_>,
+    outputs: &[(u64, Vec<Passing>)],
+    lines: Option<u64>,
+) -> Option<Option<u64>> {
+    least(shelf, book, outputs, &|parts| {
+        let few = lines.is_none_or(|most| parts.len() as u64 <= most);
+        few.then(|| parts.iter().map(|&(offer, needed)| book.shortage(offer, needed)).sum())
+    })
+}

@@ -27,6 +27,8 @@ pub struct Maker {
     pub voltages: Vec<Decimal>,
     /// Whether stock is stated for most parts.
     pub stocked: bool,
+    /// Whether some resistors are made to order; the listed ones then seldom do alone.
+    to_order: bool,
     codes: usize,
 }
 
@@ -83,7 +85,8 @@ impl Maker {
             ]));
         }
         let stocked = dice.chance(25);
-        Self { dice, absent, currents, voltages, stocked, codes: 0 }
+        let to_order = dice.chance(50);
+        Self { dice, absent, currents, voltages, stocked, to_order, codes: 0 }
     }
 
     /// An order code whose place in the alphabet tells nothing.
@@ -188,7 +191,7 @@ impl Maker {
             supply,
             offset: Volts::new(dice.spread(5e-6, 1e-3)),
             bias: Amperes::new(bias),
-            swing_low: Volts::new(dice.spread(0.02, 0.8)),
+            swing_low: Volts::new(dice.spread(0.02, 1.2)),
             swing_high: Volts::new(dice.spread(0.05, 1.5)),
             input_low: Volts::new(dice.of(&[-0.1, 0.0, 0.3])),
             input_high: Volts::new(dice.of(&[-0.1, 0.5, 1.5])),
@@ -214,22 +217,13 @@ impl Maker {
 
     /// A value that some output may want: near what it needs alone, or as part of a network.
     fn useful(&mut self) -> Decimal {
+        const PARTS: [(i32, i32); 6] = [(1, 2), (2, 1), (9, 10), (1, 10), (1, 3), (3, 1)];
+        const ALONE: [(i32, i32); 3] = [(1, 1), (1, 1), (1001, 1000)];
         let dice = &mut self.dice;
         let current = dice.of(&self.currents);
         let wanted = dice.of(&self.voltages).to_rational() / current.to_rational();
-        let (top, bottom) = dice.of(&[
-            (1, 1),
-            (1, 1),
-            (1, 1),
-            (1, 2),
-            (2, 1),
-            (9, 10),
-            (1, 10),
-            (10, 1),
-            (1001, 1000),
-            (1, 3),
-            (3, 1),
-        ]);
+        let alone = if self.to_order { 5 } else { 40 };
+        let (top, bottom) = if dice.chance(alone) { dice.of(&ALONE) } else { dice.of(&PARTS) };
         let target = wanted * BigRational::new(top.into(), bottom.into());
         let digits = dice.of(&[3, 4, 4, 5]);
         let near = around(&target, digits);
@@ -238,7 +232,8 @@ impl Maker {
 
     fn resistor(&mut self, values: Option<usize>) -> ResistorType {
         let code = self.code("RES");
-        let supply = self.supply(&code, 0.05, 4.0);
+        let dearest = if values.is_some() { 4.0 } else { 0.5 };
+        let supply = self.supply(&code, 0.05, dearest);
         let stability = self.ageing(10.0, 500.0);
         let code_pattern = format!("{code}-{{value}}");
         let values = match values {
@@ -252,14 +247,17 @@ impl Maker {
                 };
                 Values::Listed(all.into_iter().map(listed).collect())
             }
-            None => Values::MadeToOrder {
-                range: Range::new(
-                    self.dice.of(&[Decimal::new(1, 1), Decimal::new(1, 3)]),
-                    self.dice.of(&[Decimal::new(2, 3), Decimal::new(5, 4), Decimal::new(1, 6)]),
-                )
-                .unwrap(),
-                digits: self.dice.of(&[3, 4, 5, 6]),
-            },
+            None => {
+                // Some ranges end below what an output needs, so that listed values must help.
+                let current = self.dice.of(&self.currents).to_rational();
+                let top = self.dice.of(&self.voltages).to_rational() / current;
+                let (by, below) = self.dice.of(&[(1, 2), (4, 5), (4, 5), (3, 1), (20, 1)]);
+                let top = top * BigRational::new(by.into(), below.into());
+                let high = Decimal::from_rational(&around(&top, 2)[0]).unwrap();
+                let low = Decimal::new(high.mantissa(), high.exponent() - 2);
+                let range = Range::new(low, high).unwrap();
+                Values::MadeToOrder { range, digits: self.dice.of(&[1, 2, 3, 4, 6]) }
+            }
         };
         let absent = self.absent;
         let dice = &mut self.dice;
@@ -339,19 +337,18 @@ impl Maker {
             }
             catalog.amplifiers.push(made);
         }
-        let to_order = self.dice.chance(35);
-        for _ in 0..self.dice.whole(1, if to_order { 2 } else { 3 }) {
-            let count = self.dice.whole(2, if to_order { 4 } else { 7 });
+        for _ in 0..self.dice.whole(1, if self.to_order { 2 } else { 3 }) {
+            let count = self.dice.whole(2, if self.to_order { 4 } else { 7 });
             let made = self.resistor(Some(count));
             catalog.resistors.push(made);
         }
-        if to_order {
+        if self.to_order {
             for _ in 0..self.dice.of(&[1, 1, 1, 2]) {
                 let made = self.resistor(None);
                 catalog.resistors.push(made);
             }
         }
-        for _ in 0..self.dice.whole(0, 2) {
+        for _ in 0..self.dice.of(&[0, 1, 1, 2]) {
             let made = self.lift();
             catalog.lifts.push(made);
         }

@@ -1,6 +1,7 @@
 //! A plain exhaustive search, written from the rules alone. It shares nothing with the program but
 //! the types of a catalogue and a request.
 
+pub mod answer;
 pub mod ask;
 pub mod compare;
 mod corners;

@@ -3,7 +3,7 @@
 use std::cell::RefCell;
 use std::collections::{BTreeMap, HashMap};
 
-use ampthrift::catalog::Supply;
+use ampthrift::catalog::{Kind, Supply};
 use ampthrift::request::Request;
 use num_bigint::BigInt;
 use num_rational::BigRational;
@@ -74,35 +74,67 @@ pub struct Usage {
     pub fixed: i128,
 }
 
+/// One thing that can be ordered.
+struct Offer<'a> {
+    kind: Kind,
+    code: String,
+    supply: &'a Supply,
+}
+
 /// The shelf's offers with their price lists, and the costs worked out so far.
 pub struct Book<'a> {
     request: &'a Request,
-    offers: Vec<&'a Supply>,
+    offers: Vec<Offer<'a>>,
     known: RefCell<HashMap<(usize, u64), Option<Buy>>>,
 }
 
 impl<'a> Book<'a> {
     pub fn new(shelf: &Shelf<'a>) -> Self {
+        let offer = |kind, code: &str, supply| Offer { kind, code: code.to_owned(), supply };
         let mut offers = Vec::new();
-        offers.extend(shelf.references.iter().map(|r| &r.supply));
-        offers.extend(shelf.amplifiers.iter().map(|a| &a.supply));
-        offers.extend(shelf.values.iter().map(|v| &v.of.supply));
-        offers.extend(shelf.lifts.iter().map(|l| &l.supply));
+        let references = shelf.references.iter();
+        offers.extend(references.map(|r| offer(Kind::Reference, &r.order_code, &r.supply)));
+        let amplifiers = shelf.amplifiers.iter();
+        offers.extend(amplifiers.map(|a| offer(Kind::Amplifier, &a.order_code, &a.supply)));
+        let values = shelf.values.iter();
+        offers.extend(values.map(|v| offer(Kind::Resistor, &v.code, &v.of.supply)));
+        let lifts = shelf.lifts.iter();
+        offers.extend(lifts.map(|l| offer(Kind::Lift, &l.order_code, &l.supply)));
         Self { request: shelf.request, offers, known: RefCell::default() }
+    }
+
+    /// Kind and order code of an offer.
+    pub fn label(&self, offer: usize) -> (Kind, &str) {
+        (self.offers[offer].kind, &self.offers[offer].code)
     }
 
     pub fn buy(&self, offer: usize, needed: u64) -> Option<Buy> {
         if let Some(known) = self.known.borrow().get(&(offer, needed)) {
             return *known;
         }
-        let found = buy(self.request, self.offers[offer], needed);
+        let found = buy(self.request, self.offers[offer].supply, needed);
         self.known.borrow_mut().insert((offer, needed), found);
         found
     }
 
+    /// The stock of an order code.
+    pub fn stock(&self, code: &str) -> Option<u64> {
+        self.offers.iter().find(|offer| offer.code == code)?.supply.stock
+    }
+
+    /// How many units stock is short of for the smallest order that has `needed`.
+    pub fn shortage(&self, offer: usize, needed: u64) -> u64 {
+        let supply = self.offers[offer].supply;
+        let mut order = supply.order_multiple;
+        while order < needed || order < supply.order_minimum {
+            order += supply.order_multiple;
+        }
+        order.saturating_sub(supply.stock.unwrap())
+    }
+
     /// The least that one unit can cost, whatever is bought.
     pub fn least_price(&self, offer: usize) -> i128 {
-        let supply = self.offers[offer];
+        let supply = self.offers[offer].supply;
         let steps = supply.price.breaks().iter();
         steps.map(|step| converted(self.request, supply, step.each.micros())).min().unwrap()
     }
