@@ -223,7 +223,7 @@ pub fn request(outputs: usize, budget: Budget, seed: u64) -> Request {
                 current,
                 accuracy: Ppm::new(dice.log(low, 20_000.0).round()),
                 load: Load::Voltage(range(Volts::new(0.3), Volts::new(1.0))),
-                quantity: [20, 50, 100, 200, 500, 1000][(dice.next() % 6) as usize],
+                quantity: [100, 200, 500, 1000, 2000, 5000][(dice.next() % 6) as usize],
             }
         })
         .collect();

@@ -10,7 +10,7 @@
 //! designs and users the two sums together are no more than its cost, and each is a minimum.
 //! Any μ gives a bound, so the multipliers are a certificate that can be checked again.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use rayon::prelude::*;
 
@@ -35,6 +35,15 @@ impl<'s, 'a> Designs<'s, 'a> {
         match self {
             Self::All(space) => space.cheapest(costs, below),
             Self::Listed(listing) => listing.cheapest(costs, below),
+        }
+    }
+
+    /// The listing, if they are listed.
+    #[must_use]
+    pub const fn listing(&self) -> Option<&Listing<'s, 'a>> {
+        match self {
+            Self::All(_) => None,
+            Self::Listed(listing) => Some(listing),
         }
     }
 
@@ -104,8 +113,23 @@ pub struct Bound {
     pub value: f64,
     /// The cheapest design of each output at the multipliers, and its cost.
     pub picks: Vec<(f64, Pick)>,
+    /// How often the designs on the way to this bound used each part.
+    pub rates: Vec<UseRate>,
     /// Multipliers that are not at their start: part, user, value.
     moved: Vec<(u32, u32, f64)>,
+}
+
+/// How often the designs on the way to a bound used a part, 0 to 1, late ones counting more.
+#[derive(Clone, Debug)]
+pub struct UseRate {
+    /// The part.
+    pub offer: OfferId,
+    /// By any output.
+    pub any: f64,
+    /// By each output that did.
+    pub by_output: Vec<(u32, f64)>,
+    /// What the part costs those that use it.
+    pub stake: f64,
 }
 
 impl Bound {
@@ -134,6 +158,8 @@ struct User {
 #[derive(Debug)]
 struct Part {
     offer: OfferId,
+    /// What its order line costs; nothing where it is paid already.
+    line: f64,
     steps: Vec<Step>,
     /// The lowest unit price that its users together can reach.
     best: f64,
@@ -152,8 +178,8 @@ impl Part {
 #[derive(Debug)]
 pub struct Bounder<'f, 's, 'a> {
     family: &'f Family<'s, 'a>,
-    /// What an order line costs; more than it does, when lines are scarce.
-    line: f64,
+    /// Order lines that are paid already.
+    paid: f64,
     parts: Vec<Part>,
     /// Place of each offer in `parts`; none for a part that one output alone can use.
     place: Vec<u32>,
@@ -183,6 +209,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
         family: &'f Family<'s, 'a>,
         designs: &[Designs<'s, 'a>],
         extra_line_cost: i64,
+        sunk: &BTreeSet<OfferId>,
         earlier: Option<&Self>,
     ) -> Self {
         let line = (family.terms.line + extra_line_cost) as f64;
@@ -223,12 +250,18 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                         let needed = family.quantities[output] * u64::from(count);
                         match family.cost(offer, needed) {
                             cost if cost >= i64::HUGE => f64::HUGE,
+                            cost if sunk.contains(&offer) => {
+                                cost as f64 + extra_line_cost as f64 - line
+                            }
                             cost => cost as f64 + extra_line_cost as f64,
                         }
                     });
                 }
                 _ => {
-                    if let Some(part) = Self::shared_part(family, line, offer, users) {
+                    let line = if sunk.contains(&offer) { 0.0 } else { line };
+                    if let Some(part) =
+                        Self::shared_part(family, line, offer, users, earlier.is_none())
+                    {
                         for user in &part.users {
                             let mu = user.mu;
                             costs[user.output as usize].set(offer, |count| mu * f64::from(count));
@@ -239,7 +272,8 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                 }
             }
         }
-        Self { family, line, parts: bounder_parts, place, costs }
+        let paid = line * sunk.len() as f64;
+        Self { family, paid, parts: bounder_parts, place, costs }
     }
 
     /// Lemma: at multipliers that together exceed the lowest price that all users can reach by no
@@ -250,6 +284,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
         line: f64,
         offer: OfferId,
         users: Vec<User>,
+        fresh: bool,
     ) -> Option<Part> {
         let steps: Vec<Step> = if family.terms.priced {
             steps(family.market.tariff(offer)).collect()
@@ -260,9 +295,11 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
         // A step that starts beyond all demand is paid for up to its start.
         let reach = |s: &Step| s.each as f64 * (s.minimum as f64 / demand).max(1.0);
         let best = steps.iter().map(reach).min_by(f64::total_cmp)?;
-        let mut part = Part { offer, steps, best, users };
+        let mut part = Part { offer, line, steps, best, users };
         for user in &mut part.users {
-            user.mu = user.mu.max(best * user.quantity);
+            if fresh {
+                user.mu = best * user.quantity;
+            }
         }
         let left = line - part.surplus();
         if left > 0.0 {
@@ -289,6 +326,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
     ) -> Option<Bound> {
         let (mut record, mut usage) = self.evaluate(designs, None)?;
         let mut direction = Moves::new();
+        let mut rates = Moves::new();
         let (mut size, mut idle) = (1.0, 0);
         for _ in 0..effort.steps {
             let gap = ceiling as f64 - record.value;
@@ -302,6 +340,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
             self.advance(&direction, size * gap / norm);
             let reached;
             (reached, usage) = self.evaluate(designs, Some(&record.picks))?;
+            self.count_uses(&mut rates, &reached.picks);
             if reached.value > record.value + gap * 1e-5 {
                 record = reached;
                 idle = 0;
@@ -317,7 +356,39 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
             }
         }
         self.restore(&record);
+        record.rates = self.use_rates(&rates);
         Some(record)
+    }
+
+    /// Late uses count more: the weight of one falls by a twentieth a step.
+    fn count_uses(&self, rates: &mut Moves, picks: &[(f64, Pick)]) {
+        const FADE: f64 = 0.05;
+        rates.values_mut().for_each(|rate| *rate *= 1.0 - FADE);
+        for (output, (_, pick)) in picks.iter().enumerate() {
+            for (offer, _) in self.family.uses(output, pick) {
+                if let Some(key) = self.key(offer, output as u32) {
+                    *rates.entry(key).or_default() += FADE;
+                }
+            }
+        }
+    }
+
+    fn use_rates(&self, rates: &Moves) -> Vec<UseRate> {
+        let mut all: Vec<UseRate> = Vec::new();
+        for (&(part, user), &rate) in rates {
+            let of = &self.parts[part as usize];
+            let user = &of.users[user as usize];
+            if all.last().is_none_or(|last| last.offer != of.offer) {
+                let (offer, stake) = (of.offer, of.line);
+                all.push(UseRate { offer, any: 0.0, by_output: Vec::new(), stake });
+            }
+            if let Some(last) = all.last_mut() {
+                last.any = last.any.max(rate);
+                last.by_output.push((user.output, rate));
+                last.stake += rate * of.best * user.quantity;
+            }
+        }
+        all
     }
 
     /// The costs of an output at the present multipliers.
@@ -374,7 +445,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                 }
             }
         }
-        let mut value: f64 = picks.iter().map(|p| p.0).sum();
+        let mut value: f64 = self.paid + picks.iter().map(|p| p.0).sum::<f64>();
         let mut moved = Vec::new();
         for (index, part) in self.parts.iter().enumerate() {
             for (user, of) in part.users.iter().enumerate().filter(|(_, u)| u.moved) {
@@ -386,7 +457,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                 *usage.entry((index as u32, user)).or_default() -= count;
             }
         }
-        Some((Bound { value, picks, moved }, usage))
+        Some((Bound { value, picks, rates: Vec::new(), moved }, usage))
     }
 
     /// The cost of a design at the present multipliers.
@@ -406,7 +477,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
     /// min(0, v) of a part, and how much of it each user takes at that minimum.
     fn purchase_side(&self, part: &Part) -> (f64, Vec<(u32, f64)>) {
         // Nothing below zero unless the users' surplus over the lowest price pays the line.
-        if part.surplus() <= self.line {
+        if part.surplus() <= part.line {
             return (0.0, Vec::new());
         }
         let mut users: Vec<(f64, u32)> =
@@ -432,7 +503,7 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
                 worth += units * density;
                 taken.push((index, units / user.quantity));
             }
-            let value = self.line + each * bought.max(minimum) - worth;
+            let value = part.line + each * bought.max(minimum) - worth;
             if value < best.0 {
                 best = (value, taken);
             }
@@ -455,15 +526,15 @@ impl<'f, 's, 'a> Bounder<'f, 's, 'a> {
     /// Parts of a like cost should move alike: the square of the scale of a multiplier.
     fn scale(&self, (part, user): (u32, u32)) -> f64 {
         let part = &self.parts[part as usize];
-        part.best * part.users[user as usize].quantity + self.line + 1.0
+        part.best * part.users[user as usize].quantity + part.line + 1.0
     }
 
     fn advance(&mut self, direction: &Moves, step: f64) {
         for (&key, &value) in direction {
-            let part = &self.parts[key.0 as usize];
-            let user = &part.users[key.1 as usize];
-            // Below the lowest price a multiplier only loosens the bound.
-            let mu = (user.mu + step * self.scale(key) * value).max(part.best * user.quantity);
+            let user = &self.parts[key.0 as usize].users[key.1 as usize];
+            // A multiplier may well fall below the lowest price: a user who is better off with
+            // another part then leaves room to those who need this one.
+            let mu = (user.mu + step * self.scale(key) * value).max(0.0);
             self.set(key.0, key.1, mu);
         }
     }

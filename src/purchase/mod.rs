@@ -2,6 +2,7 @@
 
 mod bill;
 mod bound;
+mod branch;
 mod family;
 mod local;
 mod model;

@@ -7,7 +7,7 @@
 //! bought for at least its users and its step's minimum. Coefficients are 0, ±1 and quantities in
 //! units of the part's largest demand.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use good_lp::{Constraint, Expression, IntoAffineExpression, ProblemVariables, Variable, variable};
 
@@ -37,7 +37,8 @@ pub enum Aim {
 /// The program with handles to read its answer by.
 pub struct ChainModel<'m, 's, 'a> {
     family: &'m Family<'s, 'a>,
-    listings: &'m [Listing<'s, 'a>],
+    listings: &'m [&'m Listing<'s, 'a>],
+    sunk: &'m BTreeSet<OfferId>,
     aim: Aim,
     variables: ProblemVariables,
     objective: Expression,
@@ -56,12 +57,19 @@ struct PartUse {
 }
 
 impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
-    /// States the program for these listings.
+    /// States the program for these listings; the order lines of `sunk` parts are paid whether
+    /// they are used or not.
     #[must_use]
-    pub fn new(family: &'m Family<'s, 'a>, listings: &'m [Listing<'s, 'a>], aim: Aim) -> Self {
+    pub fn new(
+        family: &'m Family<'s, 'a>,
+        listings: &'m [&'m Listing<'s, 'a>],
+        sunk: &'m BTreeSet<OfferId>,
+        aim: Aim,
+    ) -> Self {
         let mut model = Self {
             family,
             listings,
+            sunk,
             aim,
             variables: ProblemVariables::new(),
             objective: Expression::default(),
@@ -70,6 +78,7 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
             shared: shared_parts(family, listings, aim),
             lines: Expression::default(),
         };
+        model.objective += (family.terms.line as f64 / MICROS) * sunk.len() as f64;
         for output in 0..listings.len() {
             model.add_output(output);
         }
@@ -120,7 +129,8 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
                 entry.expression += f64::from(count) * column;
                 entry.most = entry.most.max(count);
             } else {
-                cost += self.family.cost(offer, quantity * u64::from(count));
+                let line = if self.sunk.contains(&offer) { self.family.terms.line } else { 0 };
+                cost += self.family.cost(offer, quantity * u64::from(count)) - line;
                 self.lines += column;
             }
         }
@@ -128,7 +138,7 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
     }
 
     fn add_output(&mut self, output: usize) {
-        let listing = &self.listings[output];
+        let listing = self.listings[output];
         let space = listing.space;
         let market = self.family.market;
         let component = self.family.component_cost(output);
@@ -260,7 +270,7 @@ impl<'m, 's, 'a> ChainModel<'m, 's, 'a> {
             if self.aim == Aim::Cost && family.terms.priced {
                 self.objective += bought.clone() * (step.each as f64 * whole / MICROS);
             }
-            if self.aim == Aim::Cost {
+            if self.aim == Aim::Cost && !self.sunk.contains(&offer) {
                 self.objective += family.terms.line as f64 / MICROS * chosen;
             }
             let mut needed = Expression::default();
@@ -319,7 +329,7 @@ fn binds(listed: &ListedFrame) -> bool {
 /// The parts that several outputs can use; with [`Aim::Shortage`] every part of limited stock.
 fn shared_parts(
     family: &Family<'_, '_>,
-    listings: &[Listing<'_, '_>],
+    listings: &[&Listing<'_, '_>],
     aim: Aim,
 ) -> BTreeMap<OfferId, BTreeMap<usize, PartUse>> {
     let market = family.market;

@@ -1,10 +1,14 @@
 //! The cheapest set for a family, with its proof.
 
+use std::collections::BTreeSet;
 use std::time::{Duration, Instant};
+
+use rayon::prelude::*;
 
 use crate::search::{Amount, Costs, Listing, OfferId, Pick};
 
-use super::bound::{Bound, Bounder, Designs, Effort};
+use super::bound::{Bound, Bounder, Designs};
+use super::branch::{Explorer, Node};
 use super::family::{Demand, Family, Terms};
 use super::local::{Incumbent, LocalSearch, Weighed};
 use super::model::{Aim, ChainModel};
@@ -47,9 +51,7 @@ pub enum Outcome {
 
 /// Rows up to which an output's designs are listed one by one.
 const MOST_LISTED: usize = 400_000;
-/// Rounds of bound and reduction.
-const MOST_ROUNDS: u32 = 20;
-/// Rows of all outputs up to which the integer program is put to the solver at once.
+/// Rows of an output up to which the integer program on stock is put to the solver.
 const MOST_SOLVED: usize = 40_000;
 
 /// Finds the cheapest set.
@@ -70,13 +72,13 @@ pub fn solve<'s, 'a>(family: &Family<'s, 'a>, watch: &dyn Watch) -> Outcome {
     search.prove(first, designs)
 }
 
-struct Search<'f, 's, 'a> {
-    family: &'f Family<'s, 'a>,
-    watch: &'f dyn Watch,
+pub(super) struct Search<'f, 's, 'a> {
+    pub(super) family: &'f Family<'s, 'a>,
+    pub(super) watch: &'f dyn Watch,
     /// Every total is a multiple of this.
-    unit: i64,
+    pub(super) unit: i64,
     /// A price on lines beyond theirs, where `lines_max` binds.
-    extra_line: i64,
+    pub(super) extra_line: i64,
 }
 
 impl<'s, 'a> Search<'_, 's, 'a> {
@@ -144,66 +146,44 @@ impl<'s, 'a> Search<'_, 's, 'a> {
     }
 
     /// Raises the bound, lowers the best set and drops designs until they meet.
-    fn prove(&mut self, mut best: Incumbent, mut designs: Vec<Designs<'s, 'a>>) -> Outcome {
-        let family = self.family;
-        let mut proved = i64::MIN;
-        let mut earlier: Option<Bounder<'_, 's, 'a>> = None;
-        let mut rows_before = usize::MAX;
-        for round in 0..MOST_ROUNDS {
-            let mut bounder = Bounder::new(family, &designs, self.extra_line, earlier.as_ref());
-            let effort = Effort { steps: if round == 0 { 60 } else { 150 }, patience: 20 };
-            let stop = || self.watch.stop();
-            // The bound is on cost plus the price on lines; a set within `lines_max` pays no more
-            // than that price times the most.
-            let lines = self.extra_line * family.terms.lines_max.map_or(0, |m| m as i64);
-            let Some(bound) =
-                bounder.raise(&designs, best.total.saturating_add(lines), effort, &stop)
-            else {
-                // Nothing cheaper is left.
-                return Outcome::Found { bound: best.total, best };
-            };
-            proved = proved.max(bound.floor() - lines);
-            self.watch.note("bound", Some(best.total), Some(proved));
-            if proved > best.total - self.unit {
-                return Outcome::Found { bound: best.total, best };
-            }
-            if stop() {
-                return Outcome::Found { best, bound: proved };
-            }
-            self.improve(&mut best, &designs, &bound);
-            let Some(listings) = self.reduce(&designs, &bounder, &bound, best.total, lines) else {
-                return Outcome::Found { best, bound: proved };
-            };
-            if listings.iter().any(|l| l.frames.is_empty()) {
-                return Outcome::Found { bound: best.total, best };
-            }
-            let rows: usize = listings.iter().map(Listing::rows).sum();
-            designs = listings.into_iter().map(Designs::Listed).collect();
-            earlier = Some(bounder);
-            if rows <= 200 || rows as f64 > 0.9 * rows_before as f64 {
-                break;
-            }
-            rows_before = rows;
-        }
-        self.finish(best, proved, designs)
+    fn prove(&self, best: Incumbent, designs: Vec<Designs<'s, 'a>>) -> Outcome {
+        let root = Node { designs, sunk: BTreeSet::new(), earlier: None, bound: 0 };
+        let mut explorer = Explorer { search: self, best };
+        let bound = explorer.explore(root);
+        let best = explorer.best;
+        let proved = bound > best.total - self.unit;
+        Outcome::Found { bound: if proved { best.total } else { bound }, best }
     }
 
-    /// Local search from the designs that the bound picked.
-    fn improve(&self, best: &mut Incumbent, designs: &[Designs<'s, 'a>], bound: &Bound) {
+    /// The bound of a node counts cost plus the price on lines; a set within `lines_max` pays no
+    /// more for its lines than that price times the most.
+    pub(super) fn lines_allowance(&self) -> i64 {
+        self.extra_line * self.family.terms.lines_max.map_or(0, |m| m as i64)
+    }
+
+    /// A better set than the best so far, from the designs that a bound picked: by local search
+    /// where `thorough`, else only if they are better as they are.
+    pub(super) fn improved(
+        &self,
+        best: &Incumbent,
+        designs: &[Designs<'s, 'a>],
+        bound: &Bound,
+        thorough: bool,
+    ) -> Option<Incumbent> {
         let picks: Vec<Pick> = bound.picks.iter().map(|(_, pick)| *pick).collect();
-        let starts = [best.picks.clone(), picks];
-        if let Some(found) = self.local_sets(designs, self.extra_line, &starts)
-            && let Some(total) = self.family.total(&found.picks)
-            && total < best.total
-        {
-            *best = Incumbent { total, picks: found.picks };
-        }
+        let picks = if thorough {
+            self.local_sets(designs, self.extra_line, &[best.picks.clone(), picks])?.picks
+        } else {
+            picks
+        };
+        let total = self.family.total(&picks)?;
+        (total < best.total).then_some(Incumbent { total, picks })
     }
 
     /// Lemma: a set costs at least the bound plus, for each output, what its design costs at the
     /// multipliers beyond the cheapest one. So a design that is dearer than the cheapest by more
     /// than best set less bound is in no better set.
-    fn reduce(
+    pub(super) fn reduce(
         &self,
         designs: &[Designs<'s, 'a>],
         bounder: &Bounder<'_, 's, 'a>,
@@ -214,7 +194,7 @@ impl<'s, 'a> Search<'_, 's, 'a> {
         let slack = (best - self.unit) as f64 - (bound.value - lines as f64);
         let slack = slack + bound.value.abs() * 1e-11 + 1.0;
         designs
-            .iter()
+            .par_iter()
             .enumerate()
             .map(|(output, of)| {
                 let ceiling = bound.picks[output].0 + slack;
@@ -227,56 +207,8 @@ impl<'s, 'a> Search<'_, 's, 'a> {
             .collect()
     }
 
-    /// The integer program over what is left.
-    fn finish(&self, mut best: Incumbent, proved: i64, designs: Vec<Designs<'s, 'a>>) -> Outcome {
-        let listings: Vec<Listing<'s, 'a>> = designs
-            .into_iter()
-            .filter_map(|of| match of {
-                Designs::Listed(listing) => Some(listing),
-                Designs::All(_) => None,
-            })
-            .collect();
-        let rows: usize = listings.iter().map(Listing::rows).sum();
-        if listings.len() < self.family.spaces.len() || rows > MOST_SOLVED {
-            return Outcome::Found { best, bound: proved };
-        }
-        self.watch.note("integer program", Some(best.total), Some(proved));
-        let model = ChainModel::new(self.family, &listings, Aim::Cost);
-        match solve_program(&model.program(), self.time_left()) {
-            Ending::Optimal(values) => {
-                // The solver's own figures are not trusted: the set it names is counted exactly.
-                if let Some(picks) = model.picks(&values)
-                    && let Some(total) = self.family.total(&picks)
-                {
-                    if total < best.total {
-                        best = Incumbent { total, picks };
-                    }
-                    return Outcome::Found { bound: best.total, best };
-                }
-                Outcome::Found { best, bound: proved }
-            }
-            Ending::Infeasible => Outcome::Found { bound: best.total, best },
-            Ending::Stopped { values, bound } => {
-                if let Some(picks) = values.and_then(|values| model.picks(&values))
-                    && let Some(total) = self.family.total(&picks)
-                    && total < best.total
-                {
-                    best = Incumbent { total, picks };
-                }
-                let bound = bound.map_or(proved, |bound| {
-                    let micros = bound * 1e6;
-                    proved.max((micros - micros.abs() * 1e-7).floor() as i64)
-                });
-                Outcome::Found { bound: bound.min(best.total), best }
-            }
-            Ending::Trouble(why) => {
-                self.watch.note(&format!("solver: {why}"), Some(best.total), Some(proved));
-                Outcome::Found { best, bound: proved }
-            }
-        }
-    }
-
-    fn time_left(&self) -> Duration {
+    /// How long the solver may take.
+    pub(super) fn time_left(&self) -> Duration {
         self.watch.deadline().map_or(Duration::from_secs(86_400), |deadline| {
             deadline.saturating_duration_since(Instant::now())
         })
@@ -356,7 +288,9 @@ impl<'s, 'a> Search<'_, 's, 'a> {
         let listings: Option<Vec<_>> =
             family.spaces.iter().map(|s| s.listing(&free, i64::HUGE, MOST_SOLVED)).collect();
         let Some(listings) = listings else { return LeastShort::Unknown };
-        let model = ChainModel::new(&family, &listings, Aim::Shortage);
+        let listings: Vec<&Listing<'s, 'a>> = listings.iter().collect();
+        let none = BTreeSet::new();
+        let model = ChainModel::new(&family, &listings, &none, Aim::Shortage);
         let values = match solve_program(&model.program(), self.time_left()) {
             Ending::Optimal(values) => values,
             Ending::Infeasible => return LeastShort::TooManyLines,

@@ -1,8 +1,11 @@
 //! What is left of an output's designs once most are proved useless: explicit lists of pairs and
 //! networks a frame, small enough to be gone through again and again.
 
+use crate::catalog::Kind;
+
 use super::combos::Combo;
 use super::costs::{Amount, Costs};
+use super::market::OfferId;
 use super::networks::{NetChoice, NetVisitor, Walk};
 use super::oracle::{Pair, PairFront, Pick, PickedNetwork};
 use super::space::{NetSpace, OutputSpace};
@@ -235,6 +238,54 @@ impl Listing<'_, '_> {
     #[must_use]
     pub fn rows(&self) -> usize {
         self.frames.iter().map(|f| f.pairs.len() + f.networks.len()).sum()
+    }
+
+    /// The listing without the designs that use an offer.
+    #[must_use]
+    pub fn without(&self, offer: OfferId) -> Self {
+        self.filtered(offer, false)
+    }
+
+    /// The listing with only the designs that use an offer.
+    #[must_use]
+    pub fn with(&self, offer: OfferId) -> Self {
+        self.filtered(offer, true)
+    }
+
+    /// Whether some listed designs use an offer and others do not.
+    #[must_use]
+    pub fn divides(&self, offer: OfferId) -> bool {
+        let [with, without] = [self.with(offer), self.without(offer)];
+        !with.frames.is_empty() && !without.frames.is_empty()
+    }
+
+    fn filtered(&self, offer: OfferId, used: bool) -> Self {
+        let market = self.space.market;
+        let kind = market.kind(offer);
+        let frames = self.frames.iter().filter_map(|listed| {
+            let lift = self.space.frames[listed.frame as usize].lift;
+            let keeps_frame = kind != Kind::Lift
+                || lift.is_some_and(|(lift, _)| market.lift_offer(lift) == offer) == used;
+            if !keeps_frame {
+                return None;
+            }
+            let mut kept = listed.clone();
+            match kind {
+                Kind::Reference => {
+                    kept.pairs.retain(|p| (market.reference_offer(p.reference) == offer) == used)
+                }
+                Kind::Amplifier => {
+                    kept.pairs.retain(|p| (market.amplifier_offer(p.amplifier) == offer) == used)
+                }
+                Kind::Resistor => {
+                    kept.networks.retain(|n| n.network.offers().contains(&offer) == used)
+                }
+                Kind::Lift | Kind::Adjustment => {}
+            }
+            let any = !kept.pairs.is_empty() && !kept.networks.is_empty();
+            any.then_some(kept)
+        });
+        Self { space: self.space, frames: frames.collect() }
     }
 
     fn price<C: Amount>(&self, listed: &ListedFrame, costs: &Costs<C>) -> Priced<C> {
