@@ -131,10 +131,8 @@ pub fn catalog(size: Size, seed: u64) -> Catalog {
     for index in 0..size.amplifiers {
         let offset = dice.log(2e-6, 3e-3);
         let bias = dice.log(1e-13, 100e-9);
-        let price = 0.9
-            * (1e-3 / offset).powf(0.25)
-            * (10e-9 / bias).powf(0.06)
-            * dice.log(0.6, 1.7);
+        let price =
+            0.9 * (1e-3 / offset).powf(0.25) * (10e-9 / bias).powf(0.06) * dice.log(0.6, 1.7);
         catalog.amplifiers.push(Amplifier {
             order_code: format!("A{index}"),
             supply: supply(format!("A{index}"), price),
@@ -200,8 +198,7 @@ fn offset_drift(offset: f64) -> ampthrift::quantity::VoltsPerKelvin {
 /// Five decades from 100 Ω, the upper end left out.
 fn decade_values(series: &str) -> Vec<Decimal> {
     let series = Series::parse(series).expect("a series of the standard");
-    let mut values =
-        series.values(Decimal::new(100, 0), Decimal::new(1, 7)).expect("five decades");
+    let mut values = series.values(Decimal::new(100, 0), Decimal::new(1, 7)).expect("five decades");
     values.pop();
     values
 }

@@ -4,6 +4,8 @@
 
 use std::collections::BTreeSet;
 
+use rayon::prelude::*;
+
 use crate::search::{Listing, OfferId};
 
 use super::bound::{Bound, Bounder, Designs, Effort};
@@ -46,23 +48,13 @@ pub(super) struct Explorer<'e, 'f, 's, 'a> {
     pub best: Incumbent,
 }
 
-/// How the bound at a node came out.
-enum Bounded<'f, 's, 'a> {
-    /// Nothing in the node beats the best set.
-    Done,
-    /// The bound, with what is left.
-    Open(Node<'f, 's, 'a>, Bound),
-}
-
 impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
     /// A bound below which no set of the node costs; the best set's total once nothing in it can
     /// be better.
     pub fn explore(&mut self, node: Node<'f, 's, 'a>) -> i64 {
         let listed_before = node.designs.iter().all(|d| matches!(d, Designs::Listed(_)));
-        let (node, bound) = match self.settle(node, MOST_ROUNDS, 150, !listed_before) {
-            Bounded::Done => return self.best.total,
-            Bounded::Open(node, bound) => (node, bound),
-        };
+        let settled = self.settle(node, MOST_ROUNDS, 150, !listed_before);
+        let Some((node, bound)) = settled else { return self.best.total };
         if self.search.watch.stop() {
             return node.bound;
         }
@@ -72,10 +64,9 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
         {
             return bound;
         }
-        let Some(decision) = self.decide(&node, &bound) else {
+        let Some(mut children) = self.divided(&node, &bound) else {
             return self.solve(&node).unwrap_or(node.bound);
         };
-        let mut children = self.divide(&node, decision);
         children.sort_by_key(|child| child.bound);
         let mut least = self.best.total;
         for child in children {
@@ -90,14 +81,15 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
         least.min(self.best.total)
     }
 
-    /// Raises the bound and drops designs in turn, until neither gets further.
+    /// Raises the bound and drops designs in turn, until neither gets further. `None` when nothing
+    /// in the node beats the best set.
     fn settle(
         &mut self,
         mut node: Node<'f, 's, 'a>,
         rounds: u32,
         steps: u32,
         first: bool,
-    ) -> Bounded<'f, 's, 'a> {
+    ) -> Option<(Node<'f, 's, 'a>, Bound)> {
         let search = self.search;
         let stop = || search.watch.stop();
         let lines = search.lines_allowance();
@@ -111,21 +103,24 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
                 node.earlier.as_ref(),
             );
             let unlisted = node.designs.iter().any(|d| matches!(d, Designs::All(_)));
-            let effort = Effort { steps: if unlisted { 40 } else { steps }, patience: 20 };
-            let ceiling = self.best.total.saturating_add(lines);
-            let Some(bound) = bounder.raise(&node.designs, ceiling, effort, &stop) else {
-                return Bounded::Done;
+            // On unlisted designs a step is slow: better to shorten it early.
+            let effort = if unlisted {
+                Effort { steps: 40, patience: 6 }
+            } else {
+                Effort { steps, patience: 12 }
             };
+            let ceiling = self.best.total.saturating_add(lines);
+            let bound = bounder.raise(&node.designs, ceiling, effort, &stop)?;
             node.bound = node.bound.max(bound.floor().saturating_sub(lines));
             if first {
                 search.watch.note("bound", Some(self.best.total), Some(node.bound));
             }
             if node.bound > self.best.total - search.unit {
-                return Bounded::Done;
+                return None;
             }
             if stop() {
                 node.earlier = Some(bounder);
-                return Bounded::Open(node, bound);
+                return Some((node, bound));
             }
             if let Some(better) = search.improved(&self.best, &node.designs, &bound, first) {
                 self.best = better;
@@ -134,19 +129,23 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
             let Some(listings) =
                 search.reduce(&node.designs, &bounder, &bound, self.best.total, lines)
             else {
-                // Too many to list: nothing more can be done here.
                 node.earlier = Some(bounder);
-                return Bounded::Open(node, bound);
+                round += 1;
+                if round < rounds {
+                    // Too many to list as yet: a better bound leaves fewer.
+                    continue;
+                }
+                return Some((node, bound));
             };
             if listings.iter().any(|l| l.frames.is_empty()) {
-                return Bounded::Done;
+                return None;
             }
             node.designs = listings.into_iter().map(Designs::Listed).collect();
             node.earlier = Some(bounder);
             round += 1;
             let now = rows(&node.designs);
             if round >= rounds || now <= 200 || (!unlisted && now as f64 > 0.9 * before as f64) {
-                return Bounded::Open(node, bound);
+                return Some((node, bound));
             }
         }
     }
@@ -190,28 +189,29 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
         }
     }
 
-    /// The decision that raises the lower of its two bounds most, among the most divided ones.
-    fn decide(&mut self, node: &Node<'f, 's, 'a>, bound: &Bound) -> Option<Decision> {
-        let mut tried = Vec::new();
-        for decision in self.candidates(node, bound) {
-            let children = self.divide(node, decision);
-            let gain = |child: &Node<'f, 's, 'a>| {
-                (child.bound.min(self.best.total) - node.bound).max(0) as f64 + 1.0
-            };
-            // A child that is gone counts as raised all the way.
-            let whole = (self.best.total - node.bound) as f64 + 1.0;
-            let score = match children.as_slice() {
-                [] => whole * whole,
-                [one] => whole * gain(one),
-                many => many.iter().map(gain).product(),
-            };
-            let settled = children.is_empty();
-            tried.push((score, decision));
-            if settled || tried.len() == TRIED {
-                break;
-            }
-        }
-        tried.into_iter().max_by(|a, b| a.0.total_cmp(&b.0)).map(|(_, decision)| decision)
+    /// The children by the decision that raises both bounds most, among the most divided ones.
+    fn divided(&self, node: &Node<'f, 's, 'a>, bound: &Bound) -> Option<Vec<Node<'f, 's, 'a>>> {
+        // A child that is gone counts as raised all the way.
+        let whole = (self.best.total - node.bound) as f64 + 1.0;
+        let gain = |child: &Node<'f, 's, 'a>| {
+            (child.bound.min(self.best.total) - node.bound).max(0) as f64 + 1.0
+        };
+        let mut candidates = self.candidates(node, bound);
+        candidates.truncate(TRIED);
+        let tried: Vec<(f64, Vec<Node<'f, 's, 'a>>)> = candidates
+            .into_par_iter()
+            .map(|decision| {
+                let children = self.divide(node, decision);
+                let score = match children.as_slice() {
+                    [] => whole * whole,
+                    [one] => whole * gain(one),
+                    many => many.iter().map(gain).product(),
+                };
+                (score, children)
+            })
+            .collect();
+        // The last of equal scores, whatever the order of threads.
+        tried.into_iter().max_by(|a, b| a.0.total_cmp(&b.0)).map(|(_, children)| children)
     }
 
     /// Decisions that divide a node, those first on which the bound's designs disagree most,
@@ -251,7 +251,7 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
     }
 
     /// The children of a node that can still hold a better set, with a first bound.
-    fn divide(&mut self, node: &Node<'f, 's, 'a>, decision: Decision) -> Vec<Node<'f, 's, 'a>> {
+    fn divide(&self, node: &Node<'f, 's, 'a>, decision: Decision) -> Vec<Node<'f, 's, 'a>> {
         let listings = || node.designs.iter().filter_map(Designs::listing);
         let (yes, no): (Vec<Listing<'s, 'a>>, Vec<Listing<'s, 'a>>) = match decision {
             Decision::Bought(offer) => {
