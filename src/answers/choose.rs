@@ -86,10 +86,6 @@ impl Watch for Watcher<'_> {
             || self.deadline.is_some_and(|deadline| Instant::now() >= deadline)
     }
 
-    fn deadline(&self) -> Option<Instant> {
-        self.deadline
-    }
-
     fn note(&self, phase: &str, best: Option<i64>, bound: Option<i64>) {
         if let Some(progress) = self.options.progress {
             let money = |micros: i64| Money::from_micros(i128::from(micros));

@@ -47,9 +47,8 @@ impl Bill {
 #[must_use]
 pub fn bill(family: &Family<'_, '_>, picks: &[Pick]) -> Option<Bill> {
     let market = family.market;
-    let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
     let mut lines = Vec::new();
-    for (offer, needed) in family.demand(&some, None) {
+    for (offer, needed) in family.demand_of(picks) {
         let buy = family.buy(offer, needed)?;
         lines.push((
             market.kind(offer),

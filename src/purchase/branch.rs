@@ -168,7 +168,7 @@ impl<'f, 's, 'a> Explorer<'_, 'f, 's, 'a> {
             }
             Some(())
         };
-        match solve_program(&model.program(), self.search.time_left()) {
+        match solve_program(&model.program(), &|| self.search.watch.stop()) {
             Ending::Optimal(values) => {
                 take(values)?;
                 Some(self.best.total)

@@ -148,23 +148,34 @@ impl<'s, 'a> Family<'s, 'a> {
     /// The exact total of a whole set; `None` when a part cannot be had or the lines are too many.
     #[must_use]
     pub fn total(&self, picks: &[Pick]) -> Option<i64> {
-        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
-        let demand = self.demand(&some, None);
-        if self.terms.lines_max.is_some_and(|most| demand.len() as u64 > most) {
-            return None;
-        }
+        let demand = self.demand_of(picks);
+        let most = self.terms.lines_max.unwrap_or(u64::MAX);
+        if demand.len() as u64 > most { None } else { self.weighed(picks, &demand, 0) }
+    }
+
+    /// The total of a set with its demand when each line costs so much more than it does; `None`
+    /// when a part cannot be had.
+    #[must_use]
+    pub fn weighed(&self, picks: &[Pick], demand: &Demand, extra_line: i64) -> Option<i64> {
         let mut total = 0;
-        for (&offer, &needed) in &demand {
+        for (&offer, &needed) in demand {
             let cost = self.cost(offer, needed);
             if cost >= i64::HUGE {
                 return None;
             }
-            total += cost;
+            total += cost + extra_line;
         }
         for (output, pick) in picks.iter().enumerate() {
             total += self.besides_parts(output, pick);
         }
         Some(total)
+    }
+
+    /// What a whole set needs.
+    #[must_use]
+    pub fn demand_of(&self, picks: &[Pick]) -> Demand {
+        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
+        self.demand(&some, None)
     }
 }
 

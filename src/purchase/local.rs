@@ -139,28 +139,11 @@ impl<'f, 's, 'a> LocalSearch<'f, 's, 'a> {
         picks.into_iter().collect()
     }
 
-    /// The total, with the extra line cost; what this search compares by.
-    fn weighed(&self, picks: &[Pick]) -> Option<i64> {
-        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
-        let demand = self.family.demand(&some, None);
-        let mut total = 0;
-        for (&offer, &needed) in &demand {
-            let cost = self.cost(offer, needed);
-            if cost >= i64::HUGE {
-                return None;
-            }
-            total += cost;
-        }
-        for (output, pick) in picks.iter().enumerate() {
-            total += self.family.besides_parts(output, pick);
-        }
-        Some(total)
-    }
-
     /// A set from a start, settled; by the weighed total.
     pub fn settled_from(&mut self, start: Vec<Option<Pick>>, order: &[usize]) -> Option<Weighed> {
         let picks = self.settle(start, order)?;
-        let weighed = self.weighed(&picks)?;
+        let demand = self.family.demand_of(&picks);
+        let weighed = self.family.weighed(&picks, &demand, self.extra_line)?;
         Some(Weighed { weighed, picks })
     }
 

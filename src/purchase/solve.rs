@@ -1,7 +1,6 @@
 //! The cheapest set for a family, with its proof.
 
 use std::collections::BTreeSet;
-use std::time::{Duration, Instant};
 
 use rayon::prelude::*;
 
@@ -18,8 +17,6 @@ use super::solver::{Ending, solve as solve_program};
 pub trait Watch: Sync {
     /// Whether to stop now.
     fn stop(&self) -> bool;
-    /// When to stop, where there is a time limit.
-    fn deadline(&self) -> Option<Instant>;
     /// Told what the search is doing.
     fn note(&self, phase: &str, best: Option<i64>, bound: Option<i64>);
 }
@@ -110,8 +107,7 @@ impl<'s, 'a> Search<'_, 's, 'a> {
 
     /// The total of a set as a scale for a price on lines.
     fn weightiest_line(&self, picks: &[Pick]) -> i64 {
-        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
-        let demand = self.family.demand(&some, None);
+        let demand = self.family.demand_of(picks);
         demand.iter().map(|(&offer, &n)| self.family.cost(offer, n)).sum::<i64>().max(1)
     }
 
@@ -207,13 +203,6 @@ impl<'s, 'a> Search<'_, 's, 'a> {
             .collect()
     }
 
-    /// How long the solver may take.
-    pub(super) fn time_left(&self) -> Duration {
-        self.watch.deadline().map_or(Duration::from_secs(86_400), |deadline| {
-            deadline.saturating_duration_since(Instant::now())
-        })
-    }
-
     /// No set was found: which rule on the whole purchase cannot be kept.
     fn why_none(&self, designs: Vec<Designs<'s, 'a>>) -> Outcome {
         let free = Family {
@@ -291,15 +280,14 @@ impl<'s, 'a> Search<'_, 's, 'a> {
         let listings: Vec<&Listing<'s, 'a>> = listings.iter().collect();
         let none = BTreeSet::new();
         let model = ChainModel::new(&family, &listings, &none, Aim::Shortage);
-        let values = match solve_program(&model.program(), self.time_left()) {
+        let values = match solve_program(&model.program(), &|| self.watch.stop()) {
             Ending::Optimal(values) => values,
             Ending::Infeasible => return LeastShort::TooManyLines,
             Ending::Stopped { .. } | Ending::Trouble(_) => return LeastShort::Unknown,
         };
         let Some(picks) = model.picks(&values) else { return LeastShort::Unknown };
-        let some: Vec<Option<Pick>> = picks.iter().copied().map(Some).collect();
         let short = family
-            .demand(&some, None)
+            .demand_of(&picks)
             .into_iter()
             .filter(|&(offer, needed)| family.buy(offer, needed).is_none())
             .map(|(offer, needed)| (offer, market.tariff(offer).least_order(needed)))
