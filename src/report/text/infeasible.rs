@@ -5,6 +5,7 @@ use super::page::{INDENT, Page, counted, plain, tied};
 use super::{design, words};
 use crate::answers::{Cause, JointReason, OutputAnswer, Reasons, Relaxation, Removed};
 use crate::catalog::Kind;
+use crate::quantity::ppm_text;
 use crate::report::Ink;
 
 /// Width of the labels.
@@ -21,7 +22,11 @@ pub(super) fn write(page: &mut Page, output: &OutputAnswer, reasons: &Reasons) {
             let over = *total - output.target;
             let best_total = tied(&format!("{} ppm", total_beside(*total, output.target)));
             let text = if over.value() > 0.0 {
-                let over = tied(&format!("{} ppm", total_beside(over, output.target)));
+                // A near miss is shown as small as it is, not as nothing.
+                let shown = total_beside(over, output.target);
+                let nothing = shown.chars().all(|c| matches!(c, '0' | '.'));
+                let over = if nothing { ppm_text(over.value()) } else { format!("{shown} ppm") };
+                let over = tied(&over);
                 format!("{best_total}, {over} too much, with {}", design::sentence(best))
             } else {
                 format!("{best_total}, with {}", design::sentence(best))
