@@ -1,6 +1,8 @@
 //! Which reference suits which amplifier: the limits that look at both (sink current, bypass
 //! capacitor, quiescent sum) do not depend on the output.
 
+use rayon::prelude::*;
+
 use crate::circuit::Frame;
 use crate::request::Unstated;
 
@@ -30,14 +32,18 @@ impl Pairing {
         let suit = |r: &crate::catalog::Reference, a: &crate::catalog::Amplifier| {
             frame.pair_failures(r, a).is_empty() && !(refuse && frame.pair_unstated(r, a))
         };
+        let all =
+            market.references.par_iter().all(|r| market.amplifiers.iter().all(|a| suit(r, a)));
+        if all {
+            return Self { all, ..Self::default() };
+        }
         let rows: Vec<Vec<bool>> = market
             .references
-            .iter()
+            .par_iter()
             .map(|r| market.amplifiers.iter().map(|a| suit(r, a)).collect())
             .collect();
         let columns: Vec<Vec<bool>> =
             (0..market.amplifiers.len()).map(|a| rows.iter().map(|row| row[a]).collect()).collect();
-        let all = rows.iter().flatten().all(|&suits| suits);
         let (class, suits) = classes(rows);
         let (amplifier_class, columns) = classes(columns);
         Self {

@@ -10,7 +10,7 @@ use super::combos::Combo;
 use super::costs::Costs;
 use super::networks::{NetChoice, NetVisitor, Walk};
 use super::oracle::{Pick, PickedNetwork};
-use super::space::{FrameSpace, NetSpace, OutputSpace};
+use super::space::{FrameSpace, NetSpace, OutputSpace, PartIn};
 
 /// Totals closer than this, relative, are equal.
 const EQUAL: f64 = 1e-9;
@@ -108,6 +108,8 @@ struct TieFrame<'s, 'a> {
     frame: &'s FrameSpace<'a>,
     cost: i64,
     least: i64,
+    /// No pair of the frame has a smaller error.
+    least_error: f64,
     amplifiers_by_cost: BTreeMap<i64, Vec<(f64, f64, u32)>>,
     references: Vec<(i64, f64, f64, u32)>,
     /// Pairs of exactly a cost, by error; worked out when first asked for.
@@ -182,7 +184,9 @@ impl<'s, 'a, 't> TieSearch<'s, 'a, 't> {
                 let own = space.frame_cost(frame, costs);
                 let cheapest_reference = references.iter().map(|r| r.0).min().unwrap_or(0);
                 let cheapest_amplifier = amplifiers_by_cost.keys().next().copied().unwrap_or(0);
+                let least_error = |parts: &[PartIn]| parts.first().map_or(0.0, |p| p.error);
                 TieFrame {
+                    least_error: least_error(&frame.references) + least_error(&frame.amplifiers),
                     index: index as u32,
                     frame,
                     cost: own,
@@ -226,6 +230,10 @@ impl NetVisitor<i64> for TieSearch<'_, '_, '_> {
             }
             let frame = tie.frame;
             let Some(room) = space.room(&frame.own, systematic) else { continue };
+            let hopeful = space.total(frame, tie.least_error + choice.error, systematic);
+            if hopeful > self.ties.least * (1.0 + EQUAL) {
+                continue;
+            }
             let (index, wanted) = (tie.index, self.cost - network - tie.cost);
             for &(error, statics, reference, amplifier) in tie.pairs_at(space, wanted) {
                 if error > room - choice.error {
